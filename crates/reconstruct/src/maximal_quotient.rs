@@ -23,10 +23,10 @@ use linform_scalar::{Integer, Rational};
 /// use linform_reconstruct::rational_of_maximal_quotient;
 /// use linform_scalar::{Integer, Rational};
 ///
-/// // 2^40/3 modulo 2^61 − 1: far beyond symmetric bounds, yet some 19 binary digits short of the modulus.
+/// // 3^25/7 modulo 2^61 − 1: far beyond symmetric bounds, yet 18 binary digits short of the modulus.
 /// let modulus = Integer::from((1u64 << 61) - 1);
-/// let residue = Integer::from(1537229039313005226u64);
-/// let expected = Rational::new(1u64 << 40, 3);
+/// let residue = Integer::from(1_317_624_697_734_769_321u64);
+/// let expected = Rational::new(3u64.pow(25), 7);
 /// assert_eq!(rational_of_maximal_quotient(&residue, &modulus, 15), expected);
 /// assert_eq!(rational_of_maximal_quotient(&residue, &modulus, 25), None);
 /// ```
