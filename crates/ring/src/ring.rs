@@ -1,0 +1,137 @@
+//! Differential rings.
+
+use crate::{Monomial, Polynomial, Symbols};
+use linform_scalar::{Control, Integer, Stop};
+use std::fmt;
+
+/// A polynomial ring with a derivation.
+///
+/// *Invariant*: one derivative for each generator, in the symbols of the ring. The variable has derivative 1
+/// and the constants have derivative 0.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Ring {
+    symbols: Symbols,
+    derivatives: Vec<Polynomial>,
+}
+
+/// Symbols and derivatives do not make a ring.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct RingError(RingErrorKind);
+
+#[derive(Clone, Debug, PartialEq, Eq)]
+enum RingErrorKind {
+    Count {
+        generators: usize,
+        derivatives: usize,
+    },
+    Unknown {
+        generator: String,
+        symbol: usize,
+    },
+    Twice {
+        name: String,
+    },
+}
+
+impl fmt::Display for RingError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match &self.0 {
+            RingErrorKind::Count {
+                generators,
+                derivatives,
+            } => write!(f, "{derivatives} derivatives for {generators} generators"),
+            RingErrorKind::Unknown { generator, symbol } => write!(
+                f,
+                "the derivative of `{generator}` holds symbol number {symbol}, which the ring does not have"
+            ),
+            RingErrorKind::Twice { name } => write!(f, "two symbols are named `{name}`"),
+        }
+    }
+}
+
+impl std::error::Error for RingError {}
+
+impl Ring {
+    /// The ring in which the generators have the given derivatives.
+    ///
+    /// # Errors
+    ///
+    /// If the numbers of generators and derivatives differ, a derivative holds a symbol beyond the last, or two
+    /// symbols share a name.
+    pub fn new(symbols: Symbols, derivatives: Vec<Polynomial>) -> Result<Ring, RingError> {
+        if derivatives.len() != symbols.generators() {
+            return Err(RingError(RingErrorKind::Count {
+                generators: symbols.generators(),
+                derivatives: derivatives.len(),
+            }));
+        }
+        for index in 0..symbols.len() {
+            if symbols.index_of(symbols.name(index)) != Some(index) {
+                return Err(RingError(RingErrorKind::Twice {
+                    name: symbols.name(index).to_string(),
+                }));
+            }
+        }
+        for (generator, derivative) in derivatives.iter().enumerate() {
+            let width = derivative.degrees().width();
+            if width > symbols.len() {
+                return Err(RingError(RingErrorKind::Unknown {
+                    generator: symbols.name(generator).to_string(),
+                    symbol: width - 1,
+                }));
+            }
+        }
+        Ok(Ring {
+            symbols,
+            derivatives,
+        })
+    }
+
+    /// The symbols.
+    pub fn symbols(&self) -> &Symbols {
+        &self.symbols
+    }
+
+    /// The derivative of a generator.
+    ///
+    /// # Panics
+    ///
+    /// If there is no generator with this index.
+    pub fn derivative_of(&self, generator: usize) -> &Polynomial {
+        &self.derivatives[generator]
+    }
+
+    /// The derivative of an element, `Σ_g ∂p/∂g · g′ + ∂p/∂t`.
+    ///
+    /// # Errors
+    ///
+    /// [`Stop::SizeLimit`] if an exponent or the number of terms would exceed its bound; what `control` says.
+    pub fn derive(&self, element: &Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
+        let mut sum = match self.symbols.variable() {
+            Some(variable) => partial(element, variable),
+            None => Polynomial::zero(),
+        };
+        for (generator, derivative) in self.derivatives.iter().enumerate() {
+            let product = partial(element, generator).mul(derivative, control)?;
+            sum = &sum + &product;
+        }
+        Ok(sum)
+    }
+}
+
+/// The partial derivative.
+fn partial(element: &Polynomial, symbol: usize) -> Polynomial {
+    let unit = Monomial::power(symbol, 1).unwrap_or_default();
+    let terms = element
+        .terms()
+        .iter()
+        .filter_map(|(monomial, coefficient)| {
+            let lower = monomial.div(&unit)?;
+            Some((
+                lower,
+                coefficient * &Integer::from(u32::from(monomial.exponent(symbol))),
+            ))
+        })
+        .collect();
+    Polynomial::normalised(terms, element.denominator().clone())
+}
