@@ -9,6 +9,8 @@
 mod division;
 mod format;
 mod gcd;
+mod grading;
+mod lattice;
 mod monomial;
 mod parse;
 mod polynomial;
@@ -18,6 +20,7 @@ mod split;
 mod sum;
 mod symbols;
 
+pub use grading::Grading;
 pub use monomial::Monomial;
 pub use parse::ParseError;
 pub use polynomial::Polynomial;
