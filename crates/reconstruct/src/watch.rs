@@ -1,7 +1,7 @@
 //! Early termination of Chinese remaindering.
 
 use crate::rational_of_maximal_quotient;
-use linform_scalar::{ChineseRemainder, PrimeField, Rational};
+use linform_scalar::{ChineseRemainder, PrimeField, Rational, SplitMix};
 
 /// When a [`Watch`] is content.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -73,9 +73,10 @@ pub struct Watch {
 impl Watch {
     /// A watch over vectors of the given length. The seed fixes the weights.
     pub fn new(length: usize, seed: u64, patience: Patience) -> Watch {
+        let mut random = SplitMix::new(seed);
         Watch {
-            weights: (0..length as u64)
-                .map(|i| (split_mix(seed, i) >> 33) | 1)
+            weights: (0..length)
+                .map(|_| (random.next_word() >> 33) | 1)
                 .collect(),
             combination: ChineseRemainder::new(1),
             patience,
@@ -137,14 +138,6 @@ impl Watch {
     }
 }
 
-/// The `index`-th output of the generator SplitMix64 (G. L. Steele, D. Lea & C. H. Flood, OOPSLA 2014).
-fn split_mix(seed: u64, index: u64) -> u64 {
-    let mut z = seed.wrapping_add((index.wrapping_add(1)).wrapping_mul(0x9E37_79B9_7F4A_7C15));
-    z = (z ^ (z >> 30)).wrapping_mul(0xBF58_476D_1CE4_E5B9);
-    z = (z ^ (z >> 27)).wrapping_mul(0x94D0_49BB_1331_11EB);
-    z ^ (z >> 31)
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -198,8 +191,9 @@ mod tests {
     #[test]
     fn residues_without_a_common_source_do_not_settle() {
         let mut watch = Watch::new(1, 3, Patience::default());
-        for (index, prime) in primes_below(1 << 62).take(12).enumerate() {
-            let noise = split_mix(99, index as u64) % prime;
+        let mut random = SplitMix::new(99);
+        for prime in primes_below(1 << 62).take(12) {
+            let noise = random.next_word() % prime;
             let progress = watch.add(&PrimeField::new(prime).unwrap(), &[noise]);
             assert_eq!(progress, Progress::Searching);
         }

@@ -13,6 +13,7 @@ mod integer;
 mod integer_ops;
 mod prime_field;
 pub mod published;
+mod random;
 mod rational;
 
 pub use control::{Control, Stop, Unlimited};
@@ -20,4 +21,5 @@ pub use crt::ChineseRemainder;
 pub use decimal::{DecimalError, decimal_of_rational, rational_of_decimal};
 pub use integer::{Integer, ParseNumberError};
 pub use prime_field::{PrimeField, primes_below};
+pub use random::SplitMix;
 pub use rational::Rational;
