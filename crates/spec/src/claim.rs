@@ -1,0 +1,275 @@
+//! Claims and the instances of their sweeps.
+
+use crate::expression::{Condition, Expr, Sweep};
+use crate::family::Pattern;
+use crate::index::{Environment, condition_holds, index_value};
+use crate::source::{Diagnostic, Span};
+use crate::terms::Terms;
+
+/// A statement: the target is a linear form in the terms.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Claim {
+    /// The name, unique in the file.
+    pub name: String,
+    /// The sweeps, the first outermost.
+    pub sweeps: Vec<Sweep>,
+    /// Which combinations of the indices are kept; all must hold.
+    pub conditions: Vec<Condition>,
+    /// What is claimed to be a linear form.
+    pub target: Target,
+    /// In what.
+    pub terms: Terms,
+    /// What the coefficients may be.
+    pub coefficients: Coefficients,
+    /// The verdict that the author expects.
+    pub expect: Verdict,
+    /// Family elements defined by the coefficients once found.
+    pub yields: Vec<Yield>,
+    /// The largest length of an open list of terms.
+    pub at_most: Option<i64>,
+    /// The largest degree of a coefficient in the variable (claims about numbers).
+    pub degree: Option<i64>,
+    /// The weight of the target in a grading of the ring (claims about numbers).
+    pub weight: Option<i64>,
+    /// Where it is declared.
+    pub span: Span,
+}
+
+/// What a claim is about.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Target {
+    /// An element of the ring.
+    Value(Expr),
+    /// An element known only through its derivative, which lies in the ring.
+    Derivative(Expr),
+    /// Numbers in a file.
+    Data {
+        /// The file, relative to the spec.
+        path: String,
+        /// Where the path stands.
+        path_span: Span,
+        /// The column that holds the variable.
+        at: String,
+        /// The column that holds the target.
+        value: String,
+        /// The column that holds absolute errors of the target.
+        error: Option<String>,
+    },
+}
+
+/// What coefficients may be.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Hash)]
+pub enum Coefficients {
+    /// Polynomials in the variable.
+    #[default]
+    Polynomial,
+    /// Rational functions of the variable.
+    Rational,
+    /// Constants.
+    Constant,
+}
+
+/// How a claim can end.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Hash)]
+pub enum Verdict {
+    /// There is exactly one linear form.
+    #[default]
+    Holds,
+    /// There is none.
+    Refuted,
+    /// There is a family of them.
+    Undetermined,
+    /// A limit was hit, or the data are too poor.
+    Unsettled,
+}
+
+impl Coefficients {
+    /// Every kind with its name in a spec.
+    pub const ALL: [(&'static str, Coefficients); 3] = [
+        ("polynomial", Coefficients::Polynomial),
+        ("rational", Coefficients::Rational),
+        ("constant", Coefficients::Constant),
+    ];
+
+    /// The name in a spec.
+    pub fn name(self) -> &'static str {
+        match self {
+            Coefficients::Polynomial => "polynomial",
+            Coefficients::Rational => "rational",
+            Coefficients::Constant => "constant",
+        }
+    }
+}
+
+impl Verdict {
+    /// Every verdict with its name.
+    pub const ALL: [(&'static str, Verdict); 4] = [
+        ("holds", Verdict::Holds),
+        ("refuted", Verdict::Refuted),
+        ("undetermined", Verdict::Undetermined),
+        ("unsettled", Verdict::Unsettled),
+    ];
+
+    /// The name in specs and results.
+    pub fn name(self) -> &'static str {
+        match self {
+            Verdict::Holds => "holds",
+            Verdict::Refuted => "refuted",
+            Verdict::Undetermined => "undetermined",
+            Verdict::Unsettled => "unsettled",
+        }
+    }
+}
+
+/// A family element defined by the coefficients of a claim: Σ (coefficient) × (term of this list).
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Yield {
+    /// The family.
+    pub family: String,
+    /// Its indices: numbers and index variables of the claim.
+    pub pattern: Vec<Pattern>,
+    /// The terms that take the coefficients, as many as the claim has.
+    pub terms: Terms,
+    /// Where it is declared.
+    pub span: Span,
+}
+
+impl Claim {
+    /// Has one of the sweeps no end?
+    pub fn is_open(&self) -> bool {
+        self.sweeps.iter().any(|sweep| sweep.end.is_none())
+    }
+
+    /// All values of the indices, in lexicographic order; one empty environment for a claim without sweep.
+    ///
+    /// `through` bounds the sum of the indices.
+    ///
+    /// # Errors
+    ///
+    /// If there is no instance, if there are more than `limit` (or more than four times as many combinations
+    /// have to be tried against the conditions), if a sweep is open and `through` is missing, or if a bound
+    /// cannot be evaluated.
+    ///
+    /// # Complexity
+    ///
+    /// Linear in the combinations tried; a sweep that is too long is refused before it is run through.
+    pub fn instances(
+        &self,
+        through: Option<i64>,
+        limit: usize,
+    ) -> Result<Vec<Environment>, Diagnostic> {
+        let mut walk = Walk {
+            claim: self,
+            through,
+            limit,
+            tried: 0,
+            found: Vec::new(),
+            scope: Environment::new(),
+        };
+        walk.run(0)?;
+        if walk.found.is_empty() {
+            return Err(Diagnostic::new(
+                format!("the sweep of claim `{}` is empty", self.name),
+                self.sweep_span(),
+            )
+            .label("no values of the indices are left")
+            .help("let every range end at or after its start, and check the conditions"));
+        }
+        Ok(walk.found)
+    }
+
+    fn sweep_span(&self) -> Span {
+        match (self.sweeps.first(), self.sweeps.last()) {
+            (Some(first), Some(last)) => first.span.to(last.span),
+            _ => self.span,
+        }
+    }
+}
+
+/// The state of a walk through the instances.
+struct Walk<'a> {
+    claim: &'a Claim,
+    through: Option<i64>,
+    limit: usize,
+    tried: usize,
+    found: Vec<Environment>,
+    scope: Environment,
+}
+
+impl Walk<'_> {
+    fn run(&mut self, level: usize) -> Result<(), Diagnostic> {
+        let claim = self.claim;
+        let Some(sweep) = claim.sweeps.get(level) else {
+            return self.arrive();
+        };
+        let start = index_value(&sweep.start, &self.scope)?;
+        let end = match (&sweep.end, self.through) {
+            (Some(end), _) => index_value(end, &self.scope)?,
+            (None, Some(through)) => self.last_of_open(level, through),
+            (None, None) => {
+                return Err(Diagnostic::new(
+                    format!("the sweep of claim `{}` has no end", claim.name),
+                    sweep.span,
+                )
+                .help("an open sweep is a table: say how far to take it with `--through N`"));
+            }
+        };
+        if end >= start {
+            let width = usize::try_from(end.abs_diff(start)).unwrap_or(usize::MAX);
+            self.tried = self.tried.saturating_add(width).saturating_add(1);
+            if self.tried > self.limit.saturating_mul(4) {
+                return Err(self.too_many(sweep.span));
+            }
+        }
+        for value in start..=end {
+            self.scope.insert(sweep.variable.clone(), value);
+            self.run(level + 1)?;
+        }
+        self.scope.shift_remove(&sweep.variable);
+        Ok(())
+    }
+
+    /// The last value that an open sweep can take: later indices count as at least their start, where that
+    /// is known, since they may be negative.
+    fn last_of_open(&self, level: usize, through: i64) -> i64 {
+        let so_far = self
+            .scope
+            .values()
+            .fold(0i64, |sum, v| sum.saturating_add(*v));
+        let later = self.claim.sweeps[level + 1..]
+            .iter()
+            .filter_map(|sweep| index_value(&sweep.start, &self.scope).ok())
+            .fold(0i64, |sum, start| sum.saturating_add(start.min(0)));
+        through.saturating_sub(so_far).saturating_sub(later)
+    }
+
+    fn arrive(&mut self) -> Result<(), Diagnostic> {
+        if let Some(through) = self.through {
+            let sum: i128 = self.scope.values().map(|v| i128::from(*v)).sum();
+            if sum > i128::from(through) {
+                return Ok(());
+            }
+        }
+        for condition in &self.claim.conditions {
+            if !condition_holds(condition, &self.scope)? {
+                return Ok(());
+            }
+        }
+        if self.found.len() == self.limit {
+            return Err(self.too_many(self.claim.sweep_span()));
+        }
+        self.found.push(self.scope.clone());
+        Ok(())
+    }
+
+    fn too_many(&self, span: Span) -> Diagnostic {
+        Diagnostic::new(
+            format!(
+                "the sweep of claim `{}` has more than {} instances",
+                self.claim.name, self.limit
+            ),
+            span,
+        )
+        .help("shorten the ranges, or split the claim")
+    }
+}
