@@ -1,0 +1,194 @@
+//! From the square system to the outcome.
+
+use crate::profile::{Profile, profile};
+use crate::residual::vanishes;
+use crate::square::{Quotients, Square};
+use crate::{Fraction, Independence, Method, Outcome, Solved, System};
+use crate::{bareiss, certificate, modular, verify};
+use linform_ring::Polynomial;
+use linform_scalar::{Control, Stop};
+
+/// Decides the system by fraction-free elimination of its independent rows and columns.
+///
+/// # Errors
+///
+/// The reason for which the control or the size of a polynomial ended the work.
+///
+/// # Complexity
+///
+/// With rank `r`, `r³/3` updates of minors, whose degrees and lengths grow to `r` times those of the entries.
+///
+/// # References
+///
+/// E. H. Bareiss, Math. Comp. 22 (1968) 565–578.
+pub fn solve_fraction_free(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
+    decide(system, &|_| Method::FractionFree, control)
+}
+
+/// Decides the system by images modulo primes at points, for its independent rows and columns.
+///
+/// # Errors
+///
+/// The reason for which the control or the size of a polynomial ended the work.
+///
+/// # Complexity
+///
+/// Grows with the solution, not with the determinants: for every prime (the solution's bits over 62) and every
+/// point (for each variable, the degrees of numerator and denominator together) one elimination of `r³/3` word
+/// operations.
+pub fn solve_modular(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
+    decide(system, &|_| Method::Modular, control)
+}
+
+/// Decides the system; `choose` names the method for a square system.
+pub(crate) fn decide(
+    system: &System,
+    choose: &dyn Fn(&Square<'_>) -> Method,
+    control: &dyn Control,
+) -> Result<Solved, Stop> {
+    let mut attempt = 0;
+    // An attempt fails only if the rank dropped at a random point, which each has a chance of about the
+    // rank's degree over 2^62 to do.
+    loop {
+        control.proceed()?;
+        let profile = profile(system, attempt, control)?;
+        let solved = match profile.contradiction {
+            Some(_) => refute(system, &profile, choose, control)?,
+            None => solve_profile(system, &profile, choose, control)?,
+        };
+        if let Some(solved) = solved {
+            return Ok(solved);
+        }
+        attempt += 1;
+    }
+}
+
+fn solve_square(
+    square: &Square<'_>,
+    method: Method,
+    control: &dyn Control,
+) -> Result<Option<Vec<Quotients>>, Stop> {
+    match method {
+        Method::FractionFree => bareiss::solve_square(square, control),
+        Method::Modular => modular::solve_square(square, control),
+    }
+}
+
+/// The certificate of the profile's contradiction, if it holds in all columns.
+fn refute(
+    system: &System,
+    profile: &Profile,
+    choose: &dyn Fn(&Square<'_>) -> Method,
+    control: &dyn Control,
+) -> Result<Option<Solved>, Stop> {
+    let Some(contradiction) = &profile.contradiction else {
+        return Ok(None);
+    };
+    let square = Square::of_contradiction(system, contradiction);
+    let method = choose(&square);
+    let Some(weights) = solve_square(&square, method, control)?.and_then(|mut w| w.pop()) else {
+        return Ok(None);
+    };
+    let found = certificate::of_weights(system, contradiction, weights, control)?;
+    if verify::verify_certificate(system, &found, control)?.is_err() {
+        return Ok(None);
+    }
+    Ok(Some(Solved {
+        outcome: Outcome::Inconsistent(found),
+        method,
+        independence: None,
+    }))
+}
+
+/// The solutions of the square system, if they satisfy all other rows.
+fn solve_profile(
+    system: &System,
+    profile: &Profile,
+    choose: &dyn Fn(&Square<'_>) -> Method,
+    control: &dyn Control,
+) -> Result<Option<Solved>, Stop> {
+    let free: Vec<usize> = (0..system.columns())
+        .filter(|column| profile.columns.binary_search(column).is_err())
+        .collect();
+    let square = Square::of_profile(system, profile, &free);
+    let method = choose(&square);
+    let Some(solutions) = solve_square(&square, method, control)? else {
+        return Ok(None);
+    };
+    let mut solutions = solutions.into_iter();
+    let Some(particular) = solutions.next() else {
+        return Ok(None);
+    };
+    let particular = spread(system, profile, particular);
+    if !holds_outside(system, profile, &particular, true, control)? {
+        return Ok(None);
+    }
+    let mut kernel = Vec::with_capacity(free.len());
+    for (&column, solution) in free.iter().zip(solutions) {
+        let mut vector = spread(system, profile, solution);
+        // S·x = a says that column a depends on those of S: x − e is in the kernel.
+        for numerator in &mut vector.numerators {
+            *numerator = -&*numerator;
+        }
+        vector.numerators[column] = vector.denominator.clone();
+        let vector = Quotients {
+            denominator: Polynomial::one(),
+            ..vector
+        };
+        if !holds_outside(system, profile, &vector, false, control)? {
+            return Ok(None);
+        }
+        kernel.push(vector.numerators.into_iter().map(Fraction::from).collect());
+    }
+    let particular = particular.fractions(control)?;
+    let outcome = if kernel.is_empty() {
+        Outcome::Unique(particular)
+    } else {
+        Outcome::Family { particular, kernel }
+    };
+    Ok(Some(Solved {
+        outcome,
+        method,
+        independence: Some(Independence::of_profile(profile)),
+    }))
+}
+
+/// Puts the unknowns of the square system into their columns, and 0 into the others.
+fn spread(system: &System, profile: &Profile, solution: Quotients) -> Quotients {
+    let solution = solution.without_content();
+    let mut numerators = vec![Polynomial::zero(); system.columns()];
+    for (&column, numerator) in profile.columns.iter().zip(solution.numerators) {
+        numerators[column] = numerator;
+    }
+    Quotients {
+        denominator: solution.denominator,
+        numerators,
+    }
+}
+
+/// Do the quotients satisfy the rows that did not lead to them?
+fn holds_outside(
+    system: &System,
+    profile: &Profile,
+    candidate: &Quotients,
+    with_right: bool,
+    control: &dyn Control,
+) -> Result<bool, Stop> {
+    let opposite = -&candidate.denominator;
+    let mut products: Vec<(&Polynomial, &Polynomial)> = Vec::new();
+    for (index, row) in system.rows().iter().enumerate() {
+        if profile.rows.binary_search(&index).is_ok() {
+            continue;
+        }
+        products.clear();
+        let entries = row.entries.iter();
+        products.extend(entries.map(|(column, entry)| (entry, &candidate.numerators[*column])));
+        if with_right {
+            products.push((&row.right, &opposite));
+        }
+        if !vanishes(&products, control)? {
+            return Ok(false);
+        }
+    }
+    Ok(true)
+}
