@@ -6,11 +6,14 @@
 //!
 //! *Invariant*: no floating point, no input or output, no clock.
 
+mod derivation;
 mod division;
 mod format;
 mod gcd;
 mod grading;
 mod lattice;
+mod layout;
+mod meter;
 mod monomial;
 mod parse;
 mod polynomial;
@@ -24,5 +27,6 @@ pub use grading::Grading;
 pub use monomial::Monomial;
 pub use parse::ParseError;
 pub use polynomial::Polynomial;
+pub use product::ProductMethod;
 pub use ring::{Ring, RingError};
 pub use symbols::Symbols;

@@ -65,6 +65,21 @@ impl Monomial {
         Some(result)
     }
 
+    /// The product of powers of different symbols, given in rising order.
+    pub(crate) fn from_fields(fields: impl Iterator<Item = (usize, u16)>) -> Monomial {
+        let mut result = Monomial::one();
+        for (symbol, exponent) in fields {
+            if exponent > 0 {
+                let (word, shift) = place(symbol);
+                while result.0.len() <= word {
+                    result.0.push(0);
+                }
+                result.0[word] |= u64::from(exponent) << shift;
+            }
+        }
+        result
+    }
+
     fn trim(&mut self) {
         while self.0.last() == Some(&0) {
             self.0.pop();

@@ -209,6 +209,11 @@ impl Polynomial {
         gcd_of(Integer::ZERO, &self.terms)
     }
 
+    /// The gcd of a number and the coefficients of the numerator.
+    pub(crate) fn content_with(&self, number: &Integer) -> Integer {
+        gcd_of(number.clone(), &self.terms)
+    }
+
     /// The integral multiple with content 1 and positive leading coefficient; 0 for 0.
     pub fn primitive_part(&self) -> Polynomial {
         let mut common = self.content();

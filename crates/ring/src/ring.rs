@@ -1,7 +1,6 @@
 //! Differential rings.
 
-use crate::{Monomial, Polynomial, Symbols};
-use linform_scalar::{Control, Integer, Stop};
+use crate::{Polynomial, Symbols};
 use std::fmt;
 
 /// A polynomial ring with a derivation.
@@ -100,38 +99,4 @@ impl Ring {
     pub fn derivative_of(&self, generator: usize) -> &Polynomial {
         &self.derivatives[generator]
     }
-
-    /// The derivative of an element, `Σ_g ∂p/∂g · g′ + ∂p/∂t`.
-    ///
-    /// # Errors
-    ///
-    /// [`Stop::SizeLimit`] if an exponent or the number of terms would exceed its bound; what `control` says.
-    pub fn derive(&self, element: &Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
-        let mut sum = match self.symbols.variable() {
-            Some(variable) => partial(element, variable),
-            None => Polynomial::zero(),
-        };
-        for (generator, derivative) in self.derivatives.iter().enumerate() {
-            let product = partial(element, generator).mul(derivative, control)?;
-            sum = &sum + &product;
-        }
-        Ok(sum)
-    }
-}
-
-/// The partial derivative.
-fn partial(element: &Polynomial, symbol: usize) -> Polynomial {
-    let unit = Monomial::power(symbol, 1).unwrap_or_default();
-    let terms = element
-        .terms()
-        .iter()
-        .filter_map(|(monomial, coefficient)| {
-            let lower = monomial.div(&unit)?;
-            Some((
-                lower,
-                coefficient * &Integer::from(u32::from(monomial.exponent(symbol))),
-            ))
-        })
-        .collect();
-    Polynomial::normalised(terms, element.denominator().clone())
 }
