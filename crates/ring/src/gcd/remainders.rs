@@ -1,69 +1,12 @@
-//! Greatest common divisors.
+//! The gcd by pseudo-division: slow, but it always ends.
 
 use crate::polynomial::Term;
 use crate::{Monomial, Polynomial};
 use linform_scalar::{Control, Stop};
 
-impl Polynomial {
-    /// The greatest common divisor: integral, primitive, with positive leading coefficient; `gcd(0, 0) = 0`.
-    ///
-    /// # Errors
-    ///
-    /// [`Stop::SizeLimit`] if an intermediate polynomial has too many terms; what `control` says.
-    pub fn gcd(&self, other: &Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
-        if self.is_zero() {
-            return Ok(other.primitive_part());
-        }
-        if other.is_zero() {
-            return Ok(self.primitive_part());
-        }
-        gcd_primitive(&self.primitive_part(), &other.primitive_part(), control)
-    }
-}
-
-/// The gcd of two primitive polynomials.
-fn gcd_primitive(
-    a: &Polynomial,
-    b: &Polynomial,
-    control: &dyn Control,
-) -> Result<Polynomial, Stop> {
-    control.proceed()?;
-    let (monomial_a, monomial_b) = (common_monomial(a), common_monomial(b));
-    let common = monomial_a.gcd(&monomial_b);
-    let (a, b) = (without(a, &monomial_a), without(b, &monomial_b));
-    let rest = if a == b {
-        a
-    } else if a.degrees().is_one() || b.degrees().is_one() {
-        Polynomial::one()
-    } else {
-        gcd_remainders(&a, &b, control)?
-    };
-    Ok(Polynomial::integral(
-        rest.terms()
-            .iter()
-            .map(|(m, c)| Ok((m.checked_mul(&common).ok_or(Stop::SizeLimit)?, c.clone())))
-            .collect::<Result<_, Stop>>()?,
-    ))
-}
-
-fn common_monomial(p: &Polynomial) -> Monomial {
-    let mut monomials = p.terms().iter().map(|(m, _)| m);
-    let first = monomials.next().cloned().unwrap_or_default();
-    monomials.fold(first, |common, m| common.gcd(m))
-}
-
-fn without(p: &Polynomial, divisor: &Monomial) -> Polynomial {
-    Polynomial::integral(
-        p.terms()
-            .iter()
-            .filter_map(|(m, c)| Some((m.div(divisor)?, c.clone())))
-            .collect(),
-    )
-}
-
 /// The subresultant remainder sequence in one symbol, its contents by recursion in the others (W. S. Brown &
 /// J. F. Traub, J. ACM 18 (1971) 505–514).
-fn gcd_remainders(
+pub(super) fn gcd(
     a: &Polynomial,
     b: &Polynomial,
     control: &dyn Control,
