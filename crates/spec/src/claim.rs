@@ -158,27 +158,27 @@ impl Claim {
         through: Option<i64>,
         limit: usize,
     ) -> Result<Vec<Environment>, Diagnostic> {
-        let mut walk = Walk {
-            claim: self,
-            through,
-            limit,
-            tried: 0,
-            found: Vec::new(),
-            scope: Environment::new(),
-        };
-        walk.run(0)?;
-        if walk.found.is_empty() {
-            return Err(Diagnostic::new(
-                format!("the sweep of claim `{}` is empty", self.name),
-                self.sweep_span(),
-            )
-            .label("no values of the indices are left")
-            .help("let every range end at or after its start, and check the conditions"));
-        }
-        Ok(walk.found)
+        let mut walk = Walk::new(self, through, limit, limit.saturating_mul(4));
+        walk.run(0)
+            .map_err(|stop| stop.into_diagnostic(self, limit))?;
+        walk.finish()
     }
 
-    fn sweep_span(&self) -> Span {
+    /// The instances of a closed claim, or nothing if finding them takes more than `budget` steps.
+    pub(crate) fn instances_within(
+        &self,
+        budget: usize,
+    ) -> Result<Option<Vec<Environment>>, Diagnostic> {
+        let mut walk = Walk::new(self, None, budget, budget);
+        match walk.run(0) {
+            Ok(()) => walk.finish().map(Some),
+            Err(WalkStop::TooMany(_)) => Ok(None),
+            Err(WalkStop::Wrong(diagnostic)) => Err(diagnostic),
+        }
+    }
+
+    /// Where the sweeps stand, or the claim if it has none.
+    pub(crate) fn sweep_span(&self) -> Span {
         match (self.sweeps.first(), self.sweeps.last()) {
             (Some(first), Some(last)) => first.span.to(last.span),
             _ => self.span,
@@ -190,14 +190,57 @@ impl Claim {
 struct Walk<'a> {
     claim: &'a Claim,
     through: Option<i64>,
+    /// The most instances.
     limit: usize,
+    /// The most values of indices tried.
+    budget: usize,
     tried: usize,
     found: Vec<Environment>,
     scope: Environment,
 }
 
-impl Walk<'_> {
-    fn run(&mut self, level: usize) -> Result<(), Diagnostic> {
+/// Why a walk ended early.
+enum WalkStop {
+    TooMany(Span),
+    Wrong(Diagnostic),
+}
+
+impl From<Diagnostic> for WalkStop {
+    fn from(diagnostic: Diagnostic) -> WalkStop {
+        WalkStop::Wrong(diagnostic)
+    }
+}
+
+impl WalkStop {
+    fn into_diagnostic(self, claim: &Claim, limit: usize) -> Diagnostic {
+        match self {
+            WalkStop::Wrong(diagnostic) => diagnostic,
+            WalkStop::TooMany(span) => Diagnostic::new(
+                format!(
+                    "the sweep of claim `{}` has more than {limit} instances",
+                    claim.name
+                ),
+                span,
+            )
+            .help("shorten the ranges, or split the claim"),
+        }
+    }
+}
+
+impl<'a> Walk<'a> {
+    fn new(claim: &'a Claim, through: Option<i64>, limit: usize, budget: usize) -> Walk<'a> {
+        Walk {
+            claim,
+            through,
+            limit,
+            budget,
+            tried: 0,
+            found: Vec::new(),
+            scope: Environment::new(),
+        }
+    }
+
+    fn run(&mut self, level: usize) -> Result<(), WalkStop> {
         let claim = self.claim;
         let Some(sweep) = claim.sweeps.get(level) else {
             return self.arrive();
@@ -207,19 +250,23 @@ impl Walk<'_> {
             (Some(end), _) => index_value(end, &self.scope)?,
             (None, Some(through)) => self.last_of_open(level, through),
             (None, None) => {
-                return Err(Diagnostic::new(
-                    format!("the sweep of claim `{}` has no end", claim.name),
-                    sweep.span,
-                )
-                .help("an open sweep is a table: say how far to take it with `--through N`"));
+                return Err(WalkStop::Wrong(
+                    Diagnostic::new(
+                        format!("the sweep of claim `{}` has no end", claim.name),
+                        sweep.span,
+                    )
+                    .help("an open sweep is a table: say how far to take it with `--through N`"),
+                ));
             }
         };
+        // Counted before it is run through, so that a long range costs nothing.
+        self.tried = self.tried.saturating_add(1);
         if end >= start {
             let width = usize::try_from(end.abs_diff(start)).unwrap_or(usize::MAX);
-            self.tried = self.tried.saturating_add(width).saturating_add(1);
-            if self.tried > self.limit.saturating_mul(4) {
-                return Err(self.too_many(sweep.span));
-            }
+            self.tried = self.tried.saturating_add(width);
+        }
+        if self.tried > self.budget {
+            return Err(WalkStop::TooMany(sweep.span));
         }
         for value in start..=end {
             self.scope.insert(sweep.variable.clone(), value);
@@ -243,7 +290,7 @@ impl Walk<'_> {
         through.saturating_sub(so_far).saturating_sub(later)
     }
 
-    fn arrive(&mut self) -> Result<(), Diagnostic> {
+    fn arrive(&mut self) -> Result<(), WalkStop> {
         if let Some(through) = self.through {
             let sum: i128 = self.scope.values().map(|v| i128::from(*v)).sum();
             if sum > i128::from(through) {
@@ -256,20 +303,21 @@ impl Walk<'_> {
             }
         }
         if self.found.len() == self.limit {
-            return Err(self.too_many(self.claim.sweep_span()));
+            return Err(WalkStop::TooMany(self.claim.sweep_span()));
         }
         self.found.push(self.scope.clone());
         Ok(())
     }
 
-    fn too_many(&self, span: Span) -> Diagnostic {
-        Diagnostic::new(
-            format!(
-                "the sweep of claim `{}` has more than {} instances",
-                self.claim.name, self.limit
-            ),
-            span,
-        )
-        .help("shorten the ranges, or split the claim")
+    fn finish(self) -> Result<Vec<Environment>, Diagnostic> {
+        if self.found.is_empty() {
+            return Err(Diagnostic::new(
+                format!("the sweep of claim `{}` is empty", self.claim.name),
+                self.claim.sweep_span(),
+            )
+            .label("no values of the indices are left")
+            .help("let every range end at or after its start, and check the conditions"));
+        }
+        Ok(self.found)
     }
 }

@@ -13,6 +13,9 @@ const MAX_NESTING: usize = 200;
 
 type Parsed<T> = Result<T, Diagnostic>;
 
+/// How an operator joins its operands.
+type Make = fn(Box<Expr>, Box<Expr>) -> ExprKind;
+
 /// An expression that stands alone, such as a term read back from a result.
 ///
 /// Names are not checked: that is the caller's business, as is the form `A(x)` (see
@@ -270,7 +273,7 @@ impl<'a> Parser<'a> {
         let start = self.token().start;
         let mut left = self.unary(least)?;
         loop {
-            let (binding, make): (u8, fn(Box<Expr>, Box<Expr>) -> ExprKind) = match self.sign() {
+            let (binding, make): (u8, Make) = match self.sign() {
                 Some("+") => (SUM, ExprKind::Add),
                 Some("-") => (SUM, ExprKind::Sub),
                 Some("*") => (PRODUCT, ExprKind::Mul),

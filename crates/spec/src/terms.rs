@@ -63,70 +63,121 @@ impl Terms {
     /// terms, or if an index cannot be evaluated.
     pub fn expand(&self, env: &Environment, length: Option<i64>) -> Result<Vec<Expr>, Diagnostic> {
         let mut terms = Vec::new();
-        let mut tried = 0;
+        let mut walk = Walk::new(env, length, MAX_INSTANCES);
         for item in &self.items {
-            let mut scope = env.clone();
-            item.expand(0, &mut scope, length, &mut tried, &mut terms)?;
+            let complete = walk.run(item, 0, &mut |scope| {
+                terms.push(substitute(&item.body, scope)?);
+                Ok(())
+            })?;
+            if !complete {
+                return Err(
+                    Diagnostic::new(format!("more than {MAX_INSTANCES} terms"), item.span)
+                        .help("shorten the range"),
+                );
+            }
         }
-        if terms.is_empty() {
-            return Err(Diagnostic::new(
-                format!(
-                    "the list of terms of {}{} is empty",
-                    self.owner,
-                    describe(env)
-                ),
-                self.span,
-            )
-            .label("no term for these indices")
-            .help("let the range end at or after its start, or shorten the sweep of the claim"));
-        }
+        self.not_empty(terms.len(), env)?;
         Ok(terms)
+    }
+
+    /// The number of terms, or nothing if counting them takes more than `budget` steps.
+    pub(crate) fn count(
+        &self,
+        env: &Environment,
+        length: Option<i64>,
+        budget: usize,
+    ) -> Result<Option<usize>, Diagnostic> {
+        let mut count = 0;
+        let mut walk = Walk::new(env, length, budget);
+        for item in &self.items {
+            let complete = walk.run(item, 0, &mut |_| {
+                count += 1;
+                Ok(())
+            })?;
+            if !complete {
+                return Ok(None);
+            }
+        }
+        self.not_empty(count, env)?;
+        Ok(Some(count))
+    }
+
+    fn not_empty(&self, count: usize, env: &Environment) -> Result<(), Diagnostic> {
+        if count > 0 {
+            return Ok(());
+        }
+        Err(Diagnostic::new(
+            format!(
+                "the list of terms of {} is empty{}",
+                self.owner,
+                describe(env)
+            ),
+            self.span,
+        )
+        .label("no term for these indices")
+        .help("let the range end at or after its start, or shorten the sweep of the claim"))
     }
 }
 
-impl TermsItem {
-    fn expand(
-        &self,
+/// The state of a walk through the values of the sweeps of an item.
+struct Walk {
+    scope: Environment,
+    length: Option<i64>,
+    budget: usize,
+    tried: usize,
+}
+
+impl Walk {
+    fn new(env: &Environment, length: Option<i64>, budget: usize) -> Walk {
+        Walk {
+            scope: env.clone(),
+            length,
+            budget,
+            tried: 0,
+        }
+    }
+
+    /// Visits the values that the conditions keep. False if the budget does not suffice.
+    fn run(
+        &mut self,
+        item: &TermsItem,
         level: usize,
-        scope: &mut Environment,
-        length: Option<i64>,
-        tried: &mut usize,
-        terms: &mut Vec<Expr>,
-    ) -> Result<(), Diagnostic> {
-        let Some(sweep) = self.sweeps.get(level) else {
-            for condition in &self.conditions {
-                if !condition_holds(condition, scope)? {
-                    return Ok(());
+        visit: &mut dyn FnMut(&Environment) -> Result<(), Diagnostic>,
+    ) -> Result<bool, Diagnostic> {
+        let Some(sweep) = item.sweeps.get(level) else {
+            for condition in &item.conditions {
+                if !condition_holds(condition, &self.scope)? {
+                    return Ok(true);
                 }
             }
-            terms.push(substitute(&self.body, scope)?);
-            return Ok(());
+            visit(&self.scope)?;
+            return Ok(true);
         };
-        let start = index_value(&sweep.start, scope)?;
-        let end = match (&sweep.end, length) {
-            (Some(end), _) => index_value(end, scope)?,
+        let start = index_value(&sweep.start, &self.scope)?;
+        let end = match (&sweep.end, self.length) {
+            (Some(end), _) => index_value(end, &self.scope)?,
             (None, Some(length)) => start.saturating_add(length).saturating_sub(1),
             (None, None) => {
                 return Err(Diagnostic::new("this range has no end", sweep.span)
                     .help("the length of the form must be chosen before the terms are listed"));
             }
         };
+        // Counted before it is run through, so that a long range costs nothing.
+        self.tried = self.tried.saturating_add(1);
         if end >= start {
             let width = usize::try_from(end.abs_diff(start)).unwrap_or(usize::MAX);
-            *tried = tried.saturating_add(width).saturating_add(1);
-            if *tried > MAX_INSTANCES {
-                return Err(Diagnostic::new(
-                    format!("more than {MAX_INSTANCES} terms"),
-                    sweep.span,
-                )
-                .help("shorten the range"));
-            }
+            self.tried = self.tried.saturating_add(width);
+        }
+        if self.tried > self.budget {
+            return Ok(false);
         }
         for value in start..=end {
-            scope.insert(sweep.variable.clone(), value);
-            self.expand(level + 1, scope, length, tried, terms)?;
+            self.scope.insert(sweep.variable.clone(), value);
+            if !self.run(item, level + 1, visit)? {
+                return Ok(false);
+            }
         }
-        scope.shift_remove(&sweep.variable);
-        Ok(())
+        self.scope.shift_remove(&sweep.variable);
+        Ok(true)
     }
 }
