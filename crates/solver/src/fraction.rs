@@ -101,6 +101,18 @@ impl Fraction {
     pub fn is_zero(&self) -> bool {
         self.numerator.is_zero()
     }
+
+    /// A rational multiple.
+    pub fn scale(&self, factor: &Rational) -> Fraction {
+        if factor.is_zero() {
+            return Fraction::zero();
+        }
+        // The factor goes to the numerator, which carries the denominators in ℚ: the invariant stays.
+        Fraction {
+            numerator: self.numerator.scale(factor),
+            denominator: self.denominator.clone(),
+        }
+    }
 }
 
 /// The leading coefficient; 0 for 0.
