@@ -128,6 +128,8 @@ pub struct Yield {
     pub family: String,
     /// Its indices: numbers and index variables of the claim.
     pub pattern: Vec<Pattern>,
+    /// Where each of them stands.
+    pub pattern_spans: Vec<Span>,
     /// The terms that take the coefficients, as many as the claim has.
     pub terms: Terms,
     /// Where it is declared.

@@ -57,6 +57,18 @@ impl Collector {
         self.found.is_empty()
     }
 
+    /// How many mistakes are noted.
+    pub(crate) fn count(&self) -> usize {
+        self.found.len() + self.left_out
+    }
+
+    /// Takes over the mistakes of another collector, as absences.
+    pub(crate) fn append_absences(&mut self, other: Collector) {
+        for found in other.found {
+            self.push_absence(found.diagnostic);
+        }
+    }
+
     fn add(&mut self, diagnostic: Diagnostic, origin: Origin) {
         if self.is_full() {
             self.left_out += 1;

@@ -28,6 +28,8 @@ pub struct Family {
 pub struct Rule {
     /// The indices on the left.
     pub pattern: Vec<Pattern>,
+    /// Where each of them stands.
+    pub pattern_spans: Vec<Span>,
     /// Does the rule give the element or its derivative?
     pub known: Known,
     /// The right side.

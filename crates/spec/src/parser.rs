@@ -11,6 +11,9 @@ use crate::terms::TermsItem;
 /// The deepest nesting of brackets, calls, signs and exponents.
 const MAX_NESTING: usize = 200;
 
+/// The most indices of a family.
+const MAX_INDICES: usize = 16;
+
 type Parsed<T> = Result<T, Diagnostic>;
 
 /// How an operator joins its operands.
@@ -66,14 +69,16 @@ pub(crate) fn clauses(text: &str, place: &Place) -> Parsed<(Vec<Sweep>, Vec<Cond
 /// The family on the left of a rule, and the rule.
 pub(crate) fn rule(text: &str, place: &Place) -> Parsed<(String, Rule)> {
     let mut parser = Parser::new(text, place)?;
-    let (family, pattern, primes) = parser.left_side()?;
-    let known = match primes {
+    let left = parser.left_side()?;
+    let known = match left.primes {
         0 => Known::Value,
         1 => Known::Derivative,
         _ => {
-            return Err(parser
-                .error_here("a rule gives an element or its first derivative")
-                .help("write one prime on the left"));
+            return Err(Diagnostic::new(
+                "a rule gives an element or its first derivative",
+                left.span,
+            )
+            .help("write one prime on the left"));
         }
     };
     parser.expect("=", "between the two sides of a rule")?;
@@ -81,29 +86,39 @@ pub(crate) fn rule(text: &str, place: &Place) -> Parsed<(String, Rule)> {
     let (sweeps, mut conditions) = parser.clauses_after_for()?;
     // In a rule `for j = 1..5` is a condition: the pattern has already bound the variable.
     conditions.extend(sweeps.into_iter().map(condition_of_sweep));
-    Ok((
-        family,
-        Rule {
-            pattern,
-            known,
-            body,
-            conditions,
-            span: place.whole(),
-        },
-    ))
+    let rule = Rule {
+        pattern: left.pattern,
+        pattern_spans: left.pattern_spans,
+        known,
+        body,
+        conditions,
+        span: place.whole(),
+    };
+    Ok((left.family, rule))
 }
 
 /// A family with indices, as on the left of `yields`.
-pub(crate) fn pattern(text: &str, place: &Place) -> Parsed<(String, Vec<Pattern>)> {
+pub(crate) fn left_of_yields(text: &str, place: &Place) -> Parsed<LeftSide> {
     let mut parser = Parser::new(text, place)?;
-    let (family, pattern, primes) = parser.left_side()?;
-    if primes > 0 {
-        return Err(parser
-            .error_here("coefficients give an element, not its derivative")
-            .help("leave the prime out"));
+    let left = parser.left_side()?;
+    if left.primes > 0 {
+        return Err(Diagnostic::new(
+            "coefficients give an element, not its derivative",
+            left.span,
+        )
+        .help("leave the prime out"));
     }
     parser.finish("nothing more")?;
-    Ok((family, pattern))
+    Ok(left)
+}
+
+/// `u[j,0]'`
+pub(crate) struct LeftSide {
+    pub(crate) family: String,
+    pub(crate) pattern: Vec<Pattern>,
+    pub(crate) pattern_spans: Vec<Span>,
+    primes: u32,
+    span: Span,
 }
 
 fn condition_of_sweep(sweep: Sweep) -> Condition {
@@ -660,7 +675,7 @@ impl<'a> Parser<'a> {
     }
 
     /// `u[j,0]'` on the left of a rule.
-    fn left_side(&mut self) -> Parsed<(String, Vec<Pattern>, u32)> {
+    fn left_side(&mut self) -> Parsed<LeftSide> {
         let left = self.binary(SUM)?.expr;
         let ExprKind::Element {
             family,
@@ -673,10 +688,17 @@ impl<'a> Parser<'a> {
                     .help("the left side is written `u[j,0]`"),
             );
         };
-        let pattern = indices.iter().map(pattern_of).collect::<Parsed<Vec<_>>>()?;
+        let mut pattern: Vec<Pattern> = Vec::with_capacity(indices.len());
         for (number, expr) in indices.iter().enumerate() {
-            if let Pattern::Variable(name) = &pattern[number]
-                && let Some(first) = pattern[..number].iter().position(|p| *p == pattern[number])
+            if number == MAX_INDICES {
+                return Err(
+                    Diagnostic::new(format!("more than {MAX_INDICES} indices"), left.span)
+                        .help("a family has few indices"),
+                );
+            }
+            let next = pattern_of(expr)?;
+            if let Pattern::Variable(name) = &next
+                && let Some(first) = pattern.iter().position(|p| *p == next)
             {
                 return Err(Diagnostic::new(
                     format!("the index variable `{name}` stands twice on the left"),
@@ -687,8 +709,15 @@ impl<'a> Parser<'a> {
                     "use two variables, and the condition that they are equal: `for {name} == …`"
                 )));
             }
+            pattern.push(next);
         }
-        Ok((family, pattern, primes))
+        Ok(LeftSide {
+            family,
+            pattern,
+            pattern_spans: indices.iter().map(|index| index.span).collect(),
+            primes,
+            span: left.span,
+        })
     }
 }
 

@@ -5,10 +5,11 @@ use super::names::Names;
 use super::scope::{RangeOf, Scope, Where};
 use crate::claim::{Claim, Target, Yield};
 use crate::collect::Collector;
+use crate::expression::{Condition, Expr, ExprKind, Relation};
 use crate::family::Pattern;
 use crate::index::{Environment, MAX_INSTANCES, index_value};
 use crate::read::shorten;
-use crate::source::Diagnostic;
+use crate::source::{Diagnostic, Span};
 
 /// Notes every mistake in a claim.
 pub(crate) fn check(names: &Names, claim: &Claim, errors: &mut Collector) {
@@ -17,11 +18,23 @@ pub(crate) fn check(names: &Names, claim: &Claim, errors: &mut Collector) {
         Target::Value(_) | Target::Derivative(_) => Where::Ring,
     };
     let mut scope = Scope::new(names, place);
-    for sweep in &claim.sweeps {
+    for (number, sweep) in claim.sweeps.iter().enumerate() {
+        scope.later = &claim.sweeps[number..];
         scope.sweep(sweep, RangeOf::Listing, errors);
     }
+    scope.later = &[];
     check_length(claim, errors);
     for condition in &claim.conditions {
+        if let Some((name, name_span)) = value_of_unbound(&scope, condition) {
+            errors.push(
+                Diagnostic::new("this is not a range", condition.span).help(format!(
+                    "a range is written `{} = 1..n`; one value is the range `3..3`",
+                    shorten(name)
+                )),
+            );
+            scope.indices.push((name.to_owned(), name_span));
+            continue;
+        }
         scope.condition(condition, errors);
     }
     match &claim.target {
@@ -33,6 +46,23 @@ pub(crate) fn check(names: &Names, claim: &Claim, errors: &mut Collector) {
     check_terms(&mut scope, &claim.terms, errors);
     for yielded in &claim.yields {
         check_yield(names, claim, yielded, errors);
+    }
+}
+
+/// The variable in a condition `j = 3` when no range binds it.
+fn value_of_unbound<'a>(scope: &Scope<'_>, condition: &'a Condition) -> Option<(&'a str, Span)> {
+    match (&condition.operands[..], &condition.relations[..]) {
+        (
+            [
+                Expr {
+                    kind: ExprKind::Name { base, primes: 0 },
+                    span,
+                },
+                _,
+            ],
+            [Relation::Equal],
+        ) if !scope.binds(base) => Some((base, *span)),
+        _ => None,
     }
 }
 
@@ -83,15 +113,17 @@ fn check_yield(names: &Names, claim: &Claim, yielded: &Yield, errors: &mut Colle
             .indices
             .push((sweep.variable.clone(), sweep.variable_span));
     }
-    for pattern in &yielded.pattern {
+    let mut unknown = false;
+    for (pattern, span) in yielded.pattern.iter().zip(&yielded.pattern_spans) {
         if let Pattern::Variable(name) = pattern
             && !scope.binds(name)
         {
+            unknown = true;
             let known = claim.sweeps.iter().map(|sweep| sweep.variable.as_str());
             names.note_unknown(
                 "index variable",
                 name,
-                yielded.span,
+                *span,
                 known.collect(),
                 "the indices on the left are numbers and index variables of the claim",
                 errors,
@@ -103,7 +135,7 @@ fn check_yield(names: &Names, claim: &Claim, yielded: &Yield, errors: &mut Colle
             .pattern
             .iter()
             .any(|pattern| matches!(pattern, Pattern::Variable(name) if *name == sweep.variable));
-        if !used {
+        if !used && !unknown {
             errors.push(
                 Diagnostic::new(
                     format!(

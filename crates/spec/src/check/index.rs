@@ -77,7 +77,9 @@ impl Scope<'_> {
             );
             return;
         }
-        let help = if self.indices.is_empty() {
+        let help = if self.later.iter().any(|sweep| sweep.variable == base) {
+            "its range comes later: write the outer ranges first".to_owned()
+        } else if self.indices.is_empty() {
             "no index variable is bound here: `for` binds them, and so does the left side of a rule"
                 .to_owned()
         } else {

@@ -42,8 +42,10 @@ pub(crate) fn check(draft: &Draft, errors: &mut Collector) {
         check_model(&names, model, errors);
     }
     check_solution(&names, draft, errors);
-    for claim in &draft.claims {
-        claims::check(&names, claim, errors);
+    for (number, claim) in draft.claims.iter().enumerate() {
+        if !draft.unreadable_claims.contains(&number) {
+            claims::check(&names, claim, errors);
+        }
     }
     // Trying the sweeps out makes sense only where everything is known.
     if errors.is_empty() {
@@ -86,18 +88,13 @@ pub(crate) fn finish(draft: Draft, sources: Vec<SourceFile>) -> Model {
     }
 }
 
-/// The variables of a pattern in scope. They stand on the left of the rule, whose place is `span`.
-fn bind_pattern(scope: &mut Scope<'_>, pattern: &[Pattern], span: Span, errors: &mut Collector) {
-    for pattern in pattern {
-        if let Pattern::Variable(name) = pattern {
-            scope.bind(name, span, errors);
-        }
-    }
-}
-
 fn check_rule(names: &Names, rule: &Rule, errors: &mut Collector) {
     let mut scope = Scope::new(names, Where::Ring);
-    bind_pattern(&mut scope, &rule.pattern, rule.span, errors);
+    for (pattern, span) in rule.pattern.iter().zip(&rule.pattern_spans) {
+        if let Pattern::Variable(name) = pattern {
+            scope.bind(name, *span, errors);
+        }
+    }
     for condition in &rule.conditions {
         scope.condition(condition, errors);
     }
@@ -129,6 +126,7 @@ fn check_family(names: &Names, family: &DraftFamily, errors: &mut Collector) {
             )),
         );
     }
+    let noted = errors.count();
     for rule in primitive {
         let mut scope = Scope::new(names, Where::Ring);
         // A clash of the variables was noted at the rule itself.
@@ -145,7 +143,7 @@ fn check_family(names: &Names, family: &DraftFamily, errors: &mut Collector) {
                 ));
             }
         }
-        if !errors.is_empty() {
+        if errors.count() > noted {
             // The same mistake would be told once for each rule.
             return;
         }

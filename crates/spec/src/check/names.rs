@@ -18,6 +18,7 @@ pub(crate) struct Names {
     /// With the number of indices, where it is known.
     families: HashMap<String, (Option<usize>, Span)>,
     models: HashMap<String, Span>,
+    variable: Option<String>,
     constants: Vec<String>,
     /// May an unknown name be known after all, its declaration being lost?
     pub(crate) incomplete: bool,
@@ -28,6 +29,7 @@ impl Names {
     pub(crate) fn new(draft: &Draft, errors: &mut Collector) -> Names {
         let mut names = Names {
             incomplete: draft.incomplete,
+            variable: draft.variable.as_ref().map(|v| v.name.clone()),
             constants: draft.constants.iter().map(|c| c.name.clone()).collect(),
             ..Names::default()
         };
@@ -114,6 +116,12 @@ impl Names {
         self.symbols
             .get(base)
             .is_some_and(|(known, _)| known.contains(&primes))
+    }
+
+    /// Is this the variable or a constant?
+    pub(crate) fn is_base(&self, base: &str, primes: u32) -> bool {
+        primes == 0
+            && (self.variable.as_deref() == Some(base) || self.constants.iter().any(|c| c == base))
     }
 
     pub(crate) fn symbol_span(&self, base: &str) -> Option<Span> {

@@ -31,6 +31,8 @@ pub(crate) struct Scope<'a> {
     pub(crate) place: Where<'a>,
     /// The index variables in scope, each with its place.
     pub(crate) indices: Vec<(String, Span)>,
+    /// The sweeps whose variables are not yet in scope, for help lines.
+    pub(crate) later: &'a [Sweep],
 }
 
 /// What kind of thing a range runs over.
@@ -48,6 +50,7 @@ impl<'a> Scope<'a> {
             names,
             place,
             indices: Vec::new(),
+            later: &[],
         }
     }
 

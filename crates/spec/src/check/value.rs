@@ -128,7 +128,12 @@ impl Scope<'_> {
             Where::Equation(model) | Where::Kernel(model) => {
                 self.model_name(model, span, base, primes, errors);
             }
-            Where::Decay | Where::Ring | Where::Data if self.names.is_element(base, primes) => {}
+            Where::Ring | Where::Data if self.names.is_element(base, primes) => {}
+            Where::Decay if self.names.is_base(base, primes) => {}
+            Where::Decay if self.names.is_element(base, primes) => errors.push(
+                Diagnostic::new(format!("`{}` cannot stand here", written(base, primes)), span)
+                    .help(self.what_may_stand_here()),
+            ),
             Where::Derivation if self.names.is_symbol(base, primes) => {}
             Where::Derivation if self.names.is_element(base, primes) => errors.push(
                 Diagnostic::new(

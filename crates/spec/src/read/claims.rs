@@ -35,11 +35,13 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
     section.allow(&KEYS, errors);
     let name = name(section, draft, errors);
     let owner = format!("claim `{}`", shorten(&name));
-    let (sweeps, conditions) = section
-        .get("for")
-        .and_then(|entry| entry.text(errors))
-        .and_then(|text| errors.take(parser::clauses(&text.value, &text.place)))
-        .unwrap_or_default();
+    let clauses = section.get("for").map(|entry| {
+        let text = entry.text(errors)?;
+        errors.take(parser::clauses(&text.value, &text.place))
+    });
+    // Without its indices nothing sensible can be said of the rest of the claim.
+    let readable = clauses != Some(None);
+    let (sweeps, conditions) = clauses.flatten().unwrap_or_default();
     let target = target(section, errors);
     let terms = section
         .require("terms", "terms = \"ratio(F,n) for n = 1..4\"", errors)
@@ -65,9 +67,11 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
     let yields = section
         .get("yields")
         .and_then(|entry| entry.section("yields", errors))
-        .map_or_else(Vec::new, |table| yields(&table, &owner, errors));
-    let readable = target.is_some() && terms.is_some();
-    draft.incomplete |= !readable;
+        .map_or_else(Vec::new, |table| {
+            let (yields, complete) = yields(&table, &owner, errors);
+            draft.incomplete |= !complete;
+            yields
+        });
     let claim = Claim {
         sweeps,
         conditions,
@@ -87,6 +91,9 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
         span: section.span,
     };
     check_open(section, &claim, errors);
+    if !readable {
+        draft.unreadable_claims.insert(draft.claims.len());
+    }
     draft.claims.push(claim);
 }
 
@@ -156,17 +163,14 @@ fn target(section: &Section<'_>, errors: &mut Collector) -> Option<Target> {
     if entry.key == "data" {
         let at = column(section, "at", "at = \"t\"", errors);
         let value = column(section, "value", "value = \"G\"", errors);
-        let error = match section.get("error") {
-            Some(entry) => Some(filled(entry, errors)?),
-            None => None,
-        };
+        let error = section.get("error").and_then(|entry| filled(entry, errors));
         section.require("degree", "degree = 4", errors);
-        let text = text?;
+        // What is missing is noted; the claim is about numbers all the same.
         return Some(Target::Data {
-            path_span: text.place.whole(),
-            path: text.value,
-            at: at?,
-            value: value?,
+            path_span: entry.value_span(),
+            path: text.map(|text| text.value).unwrap_or_default(),
+            at: at.unwrap_or_default(),
+            value: value.unwrap_or_default(),
             error,
         });
     }
@@ -216,27 +220,31 @@ fn filled(entry: &Entry<'_>, errors: &mut Collector) -> Option<String> {
     Some(text.value)
 }
 
-fn yields(table: &Section<'_>, owner: &str, errors: &mut Collector) -> Vec<Yield> {
-    table
+/// The elements that a claim yields, and whether all of them could be read.
+fn yields(table: &Section<'_>, owner: &str, errors: &mut Collector) -> (Vec<Yield>, bool) {
+    let yields: Vec<_> = table
         .entries()
         .iter()
         .filter_map(|entry| {
             let key = entry.key_text();
-            let left = errors.take(parser::pattern(&key.value, &key.place));
+            let left = errors.take(parser::left_of_yields(&key.value, &key.place));
             let terms = terms(
                 entry,
                 format!("`{}`, yielded by {owner},", shorten(entry.key)),
                 errors,
             );
-            let ((family, pattern), terms) = (left?, terms?);
+            let (left, terms) = (left?, terms?);
             Some(Yield {
-                family,
-                pattern,
+                family: left.family,
+                pattern: left.pattern,
+                pattern_spans: left.pattern_spans,
                 terms,
                 span: key.place.whole(),
             })
         })
-        .collect()
+        .collect();
+    let complete = yields.len() == table.entries().len();
+    (yields, complete)
 }
 
 /// Open ranges need a bound, and a bound needs an open range.
@@ -263,7 +271,8 @@ fn check_open(section: &Section<'_>, claim: &Claim, errors: &mut Collector) {
             )
             .help("add `at_most = 12`: lengths up to it are tried, or write the end, as in `1..8`"),
         ),
-        (None, Some(entry)) if !claim.terms.items.is_empty() => errors.push(
+        (None, Some(entry)) if claim.at_most.is_some() && !claim.terms.items.is_empty() => errors
+            .push(
             Diagnostic::new(
                 "`at_most` bounds an open range, but no range is open",
                 entry.key_span,

@@ -7,7 +7,7 @@ use crate::model::{FiniteSizeModel, Law, Solution};
 use crate::source::Span;
 use indexmap::IndexMap;
 use linform_scalar::Integer;
-use std::collections::HashMap;
+use std::collections::{HashMap, HashSet};
 
 /// A declared name and its place.
 #[derive(Clone, Debug)]
@@ -32,6 +32,8 @@ pub(crate) struct Draft {
     pub(crate) solution: Option<Solution>,
     pub(crate) models: IndexMap<String, DraftModel>,
     pub(crate) claims: Vec<Claim>,
+    /// The claims whose indices could not be read.
+    pub(crate) unreadable_claims: HashSet<usize>,
     /// The claims by name.
     pub(crate) claim_spans: HashMap<String, Span>,
     /// Is a part of the declarations lost, so that unknown names may be known after all?

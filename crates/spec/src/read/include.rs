@@ -197,7 +197,10 @@ fn syntax_error(file: File<'_>, error: &Error) -> Diagnostic {
         "each key stands once in its table, and each table has one header"
     } else if message.starts_with("invalid unquoted key") {
         "put a key with primes or other signs in quotation marks, as in `\"q'\" = …`"
-    } else if message.starts_with("string values must be quoted") {
+    } else if message.starts_with("string values must be quoted")
+        || message.starts_with("invalid boolean")
+        || message.starts_with("invalid float")
+    {
         "put the value in quotation marks"
     } else if message.contains("escape") {
         "a backslash is written `\\\\`, or the string stands in single quotation marks"

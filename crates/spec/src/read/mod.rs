@@ -32,7 +32,12 @@ const TOP: [&str; 8] = [
 fn read_file(file: File<'_>, table: &DeTable<'_>, draft: &mut Draft, errors: &mut Collector) {
     let main = file.number == 0;
     let top = Section::new("the file", file.span(0..0), file, table);
-    top.allow(&TOP, errors);
+    // Without a header, its keys seem to stand at the top: after a syntax error they are not told.
+    let mut stray = Collector::default();
+    if !top.allow(&TOP, &mut stray) {
+        draft.incomplete = true;
+        errors.append_absences(stray);
+    }
     if let Some(entry) = top.get("title") {
         let title = entry.text(errors);
         if main {

@@ -12,10 +12,10 @@ use crate::suggest::did_you_mean;
 const MAX_SYMBOLS: usize = 1000;
 
 pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collector) {
-    section.allow(
-        &["variable", "constants", "generators", "derivative"],
-        errors,
-    );
+    let keys = ["variable", "constants", "generators", "derivative"];
+    if !section.allow(&keys, errors) {
+        draft.incomplete = true;
+    }
     if let Some(entry) = section.get("constants") {
         match entry.texts(false, errors) {
             Some(texts) => {

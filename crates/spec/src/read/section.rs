@@ -86,11 +86,16 @@ impl<'a> Section<'a> {
         self.entries.iter().find(|entry| entry.key == key)
     }
 
-    /// Notes every key that is none of these.
-    pub(crate) fn allow(&self, keys: &[&str], errors: &mut Collector) {
+    /// Notes every key that is none of these. True if there is none.
+    pub(crate) fn allow(&self, keys: &[&str], errors: &mut Collector) -> bool {
+        let mut known = true;
         for entry in &self.entries {
-            if keys.contains(&entry.key) || errors.is_full() {
+            if keys.contains(&entry.key) {
                 continue;
+            }
+            known = false;
+            if errors.is_full() {
+                break;
             }
             let help = match did_you_mean(entry.key, keys.iter().copied()) {
                 Some(near) => format!("did you mean `{near}`?"),
@@ -104,6 +109,7 @@ impl<'a> Section<'a> {
                 .help(help),
             );
         }
+        known
     }
 
     /// The entry, or a note that it is missing.
