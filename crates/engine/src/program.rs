@@ -211,7 +211,8 @@ impl Program {
         values: &mut [Option<A::Element>],
     ) -> Result<(), A::Error> {
         for node in self.missing_for(roots, values) {
-            let value = self.evaluate_node(arithmetic, node, values)?;
+            let value =
+                self.evaluate_node(arithmetic, node, &|operand| values[operand.0].as_ref())?;
             values[node.0] = Some(value);
         }
         Ok(())
@@ -219,7 +220,7 @@ impl Program {
 
     /// The nodes that have to be evaluated for `roots`, in the order of the program: what an evaluated node depends on
     /// is not needed again.
-    fn missing_for<T>(&self, roots: &[NodeId], values: &[Option<T>]) -> Vec<NodeId> {
+    pub(crate) fn missing_for<T>(&self, roots: &[NodeId], values: &[Option<T>]) -> Vec<NodeId> {
         let mut missing = vec![false; self.len()];
         roots
             .iter()
@@ -236,18 +237,22 @@ impl Program {
             .collect()
     }
 
-    fn evaluate_node<A: Arithmetic>(
+    /// Evaluates one node from the values of its operands.
+    ///
+    /// # Panics
+    ///
+    /// If `lookup` has no value for an operand.
+    pub(crate) fn evaluate_node<'v, A: Arithmetic>(
         &self,
         arithmetic: &mut A,
         node: NodeId,
-        values: &[Option<A::Element>],
-    ) -> Result<A::Element, A::Error> {
-        // Operands stand before the node, and `missing_for` lists every operand that has no value.
-        let value = |operand: &NodeId| {
-            values[operand.0]
-                .as_ref()
-                .expect("operands are evaluated first")
-        };
+        lookup: &impl Fn(NodeId) -> Option<&'v A::Element>,
+    ) -> Result<A::Element, A::Error>
+    where
+        A::Element: 'v,
+    {
+        // Operands stand before the node, so whoever evaluates in order has them.
+        let value = |operand: &NodeId| lookup(*operand).expect("operands are evaluated first");
         match self.operation(node) {
             Operation::Rational(number) => arithmetic.rational(number),
             Operation::Symbol(index) => arithmetic.symbol(*index),

@@ -3,7 +3,7 @@
 //! This module shares no code with crate `ring`: polynomials are maps from exponents to `num` rationals, multiplied
 //! term by term.
 
-use linform_scalar::published::{BigRational, One, Signed, Zero};
+use linform_scalar::published::{BigInt, BigRational, One, Signed, Zero};
 use std::collections::BTreeMap;
 use std::fmt;
 
@@ -87,16 +87,79 @@ impl PublishedPolynomial {
         sum
     }
 
+    /// The difference.
+    pub fn minus(&self, other: &Self) -> Self {
+        let mut difference = self.clone();
+        other
+            .terms
+            .iter()
+            .for_each(|(exponents, value)| difference.add_term(exponents.clone(), -value));
+        difference
+    }
+
     /// The product, term by term.
     pub fn times(&self, other: &Self) -> Self {
         let mut product = Self::default();
         for (left, a) in &self.terms {
-            for (right, b) in &other.terms {
-                let exponents = left.iter().zip(right).map(|(e, f)| e + f).collect();
-                product.add_term(exponents, a * b);
-            }
+            product.add_multiple(other, left, a);
         }
         product
+    }
+
+    /// The product, asking `proceed` before each row of terms.
+    pub(crate) fn times_while<E>(
+        &self,
+        other: &Self,
+        proceed: &mut dyn FnMut() -> Result<(), E>,
+    ) -> Result<Self, E> {
+        let mut product = Self::default();
+        for (left, a) in &self.terms {
+            proceed()?;
+            product.add_multiple(other, left, a);
+        }
+        Ok(product)
+    }
+
+    fn add_multiple(&mut self, other: &Self, left: &[u32], a: &BigRational) {
+        for (right, b) in &other.terms {
+            let exponents = left.iter().zip(right).map(|(e, f)| e + f).collect();
+            self.add_term(exponents, a * b);
+        }
+    }
+
+    /// The value in the integers modulo a word, with a word for each symbol; nothing if a denominator vanishes.
+    pub(crate) fn residue(&self, modulus: u64, point: &[u64]) -> Option<u64> {
+        let modulus = u128::from(modulus);
+        let power = |mut base: u128, mut exponent: u128| {
+            let mut result = 1 % modulus;
+            base %= modulus;
+            while exponent > 0 {
+                if exponent & 1 == 1 {
+                    result = result * base % modulus;
+                }
+                base = base * base % modulus;
+                exponent >>= 1;
+            }
+            result
+        };
+        let big = BigInt::from(modulus);
+        let word = |value: &BigInt| -> u128 {
+            let reduced = ((value % &big) + &big) % &big;
+            reduced.iter_u64_digits().next().map_or(0, u128::from)
+        };
+        let mut sum = 0;
+        for (exponents, value) in &self.terms {
+            let denominator = word(value.denom());
+            if denominator == 0 {
+                return None;
+            }
+            let mut term = word(value.numer()) * power(denominator, modulus - 2) % modulus;
+            for (exponent, place) in exponents.iter().zip(point) {
+                term = term * power(u128::from(*place), u128::from(*exponent)) % modulus;
+            }
+            sum = (sum + term) % modulus;
+        }
+        Some(sum as u64)
     }
 
     /// A rational multiple.
@@ -193,4 +256,151 @@ impl fmt::Display for Coefficient {
             wrap(denominator, simple)
         )
     }
+}
+
+/// A text is not a coefficient.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct CoefficientError(String);
+
+impl fmt::Display for CoefficientError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(&self.0)
+    }
+}
+
+impl std::error::Error for CoefficientError {}
+
+/// The largest exponent that is read.
+const MOST_EXPONENT: u32 = 100_000;
+
+impl Coefficient {
+    /// Reads a coefficient as [`Display`](fmt::Display) writes it, in the given symbols.
+    ///
+    /// # Errors
+    ///
+    /// A text that is no quotient of sums of terms `c*t^i`, a symbol that is not among the names, a denominator 0.
+    pub fn parse(
+        text: &str,
+        names: &std::sync::Arc<[String]>,
+    ) -> Result<Coefficient, CoefficientError> {
+        let wrong = |what: &str| CoefficientError(format!("`{}`: {what}", shorten(text)));
+        let (numerator, denominator) = split_quotient(text);
+        let read = |part: &str| {
+            let inner = part
+                .trim()
+                .strip_prefix('(')
+                .and_then(|rest| rest.strip_suffix(')'))
+                .unwrap_or(part);
+            parse_sum(inner, names).ok_or_else(|| {
+                wrong("not a sum of terms such as 3/10*t^2 in the symbols of the base")
+            })
+        };
+        let numerator = read(numerator)?;
+        let denominator = match denominator {
+            Some(part) => read(part)?,
+            None => PublishedPolynomial::constant(names.len(), BigRational::one()),
+        };
+        if denominator.is_empty() {
+            return Err(wrong("the denominator is 0"));
+        }
+        Ok(Coefficient {
+            names: names.clone(),
+            numerator,
+            denominator,
+        })
+    }
+}
+
+fn shorten(text: &str) -> String {
+    const SHOWN: usize = 60;
+    let mut short: String = text.chars().take(SHOWN).collect();
+    if short.len() < text.len() {
+        short.push('…');
+    }
+    short
+}
+
+/// Splits `N/(D)`, `(N)/D` and `N/7`-like texts: a slash outside parentheses that is not part of a rational number.
+fn split_quotient(text: &str) -> (&str, Option<&str>) {
+    let mut depth = 0usize;
+    let bytes = text.as_bytes();
+    for (position, byte) in bytes.iter().enumerate() {
+        match byte {
+            b'(' => depth += 1,
+            b')' => depth = depth.saturating_sub(1),
+            b'/' if depth == 0 => {
+                let after_digit = position > 0 && bytes[position - 1].is_ascii_digit();
+                let before_digit = bytes.get(position + 1).is_some_and(u8::is_ascii_digit);
+                // `t^2/3` never occurs: a rational number stands in front of its monomial.
+                if !(after_digit && before_digit) {
+                    return (&text[..position], Some(&text[position + 1..]));
+                }
+            }
+            _ => {}
+        }
+    }
+    (text, None)
+}
+
+fn parse_sum(text: &str, names: &[String]) -> Option<PublishedPolynomial> {
+    let mut sum = PublishedPolynomial::default();
+    let mut rest = text.trim();
+    if rest == "0" {
+        return Some(sum);
+    }
+    let mut first = true;
+    while !rest.is_empty() {
+        let negative = match rest.as_bytes()[0] {
+            b'-' => true,
+            b'+' if !first => false,
+            _ if first => {
+                let (exponents, value, tail) = parse_term(rest, names)?;
+                sum.add_term(exponents, value);
+                (rest, first) = (tail, false);
+                continue;
+            }
+            _ => return None,
+        };
+        let (exponents, value, tail) = parse_term(rest[1..].trim_start(), names)?;
+        sum.add_term(exponents, if negative { -value } else { value });
+        (rest, first) = (tail, false);
+    }
+    (!first).then_some(sum)
+}
+
+/// One term without its sign, and what follows it.
+fn parse_term<'t>(text: &'t str, names: &[String]) -> Option<(Vec<u32>, BigRational, &'t str)> {
+    let end = text.find(['+', '-']).unwrap_or(text.len());
+    let (term, rest) = text.split_at(end);
+    let mut exponents = vec![0u32; names.len()];
+    let mut value = BigRational::one();
+    for (position, factor) in term.trim().split('*').map(str::trim).enumerate() {
+        if factor.starts_with(|c: char| c.is_ascii_digit()) {
+            // A number stands first; `+5`, `1_000` and spaces inside are refused.
+            if position > 0
+                || !factor
+                    .bytes()
+                    .all(|byte| byte.is_ascii_digit() || byte == b'/')
+            {
+                return None;
+            }
+            let (numerator, denominator) = factor.split_once('/').unwrap_or((factor, "1"));
+            let denominator: BigInt = denominator.parse().ok()?;
+            if denominator.is_zero() {
+                return None;
+            }
+            value = BigRational::new(numerator.parse().ok()?, denominator);
+            continue;
+        }
+        let (name, exponent) = factor.split_once('^').unwrap_or((factor, "1"));
+        let index = names.iter().position(|known| known == name)?;
+        let exponent: u32 = exponent
+            .parse()
+            .ok()
+            .filter(|exponent| *exponent <= MOST_EXPONENT)?;
+        exponents[index] = exponents[index]
+            .checked_add(exponent)
+            .filter(|sum| *sum <= MOST_EXPONENT)?;
+    }
+    Some((exponents, value, rest))
 }

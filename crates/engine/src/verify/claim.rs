@@ -1,0 +1,496 @@
+//! The checks of single claims.
+
+use super::arithmetic::CheckError;
+use super::{Check, CheckOutcome};
+use crate::prepare::{Instance, Prepared};
+use crate::program::Operation;
+use crate::published::{Coefficient, PublishedPolynomial, monomial_text};
+use crate::record::{
+    CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, GradingRecord,
+    IndependenceRecord, KnownBy, Refutation,
+};
+use linform_scalar::PrimeField;
+use linform_scalar::published::{BigInt, BigRational, Zero};
+use std::collections::{BTreeMap, BTreeSet};
+
+/// The elements that a claim compares: the target (or its derivative) and the columns of the system.
+struct Compared {
+    right: PublishedPolynomial,
+    terms: Vec<PublishedPolynomial>,
+    /// The terms, or for a target known by its derivative the pairs (derivative of term, term).
+    columns: Vec<PublishedPolynomial>,
+    paired: bool,
+    /// The number of leading symbols whose monomials are compared: the generators, and the variable where the coefficients
+    /// are constants.
+    split: usize,
+}
+
+fn wrong<T>(what: impl Into<String>) -> Result<T, CheckError> {
+    Err(CheckError::Wrong(what.into()))
+}
+
+impl Check<'_> {
+    pub(super) fn claim(
+        &mut self,
+        claim: &ClaimRecord,
+        instance: &Instance,
+    ) -> Result<CheckOutcome, CheckError> {
+        let prepared = self.arithmetic.prepared;
+        let Some(list) = instance
+            .alternatives
+            .iter()
+            .find(|list| list.texts == claim.terms)
+        else {
+            return wrong("the terms are not those of the spec");
+        };
+        let kind = match prepared.model.claims[instance.claim].coefficients {
+            linform_spec::Coefficients::Polynomial => CoefficientKind::Polynomial,
+            linform_spec::Coefficients::Rational => CoefficientKind::Rational,
+            linform_spec::Coefficients::Constant => CoefficientKind::Constant,
+        };
+        if claim.target != instance.target_text || claim.coefficients != kind {
+            return wrong("the target or the kind of coefficients is not that of the spec");
+        }
+        if claim.expected != crate::solve::expected(prepared, instance) {
+            return wrong("the expected verdict is not that of the spec");
+        }
+        if matches!(claim.finding, Finding::Unsettled(_)) {
+            return Ok(CheckOutcome::Open);
+        }
+        if matches!(claim.finding, Finding::Refuted(_))
+            && instance.alternatives.last() != Some(list)
+        {
+            return wrong("a refutation must take the longest list of terms");
+        }
+        let compared = self.compared(claim, instance, &list.nodes)?;
+        self.check_shape(claim, &compared)?;
+        let how = match &claim.finding {
+            Finding::Holds { form } => {
+                check_kind(form, kind)?;
+                self.check_form(claim, form, &compared)?;
+                "the form was substituted and both sides expanded; they agree"
+            }
+            Finding::Undetermined { particular, kernel } => {
+                self.check_form(claim, particular, &compared)?;
+                self.check_kernel(claim, kernel, &compared)?;
+                "the particular form was substituted, and every form of the kernel expands to 0"
+            }
+            Finding::Refuted(Refutation::Contradiction { rows, value }) => {
+                self.check_contradiction(rows, value, &compared)?;
+                "the multiplied equations add up to 0 on the left and to something else on the right"
+            }
+            Finding::Refuted(Refutation::OtherCoefficients { form, independence }) => {
+                if check_kind(form, kind).is_ok() || kind == CoefficientKind::Rational {
+                    return wrong("the coefficients are of the kind that the claim admits");
+                }
+                self.check_form(claim, form, &compared)?;
+                self.check_independence(independence, &compared)?;
+                "the rational form was substituted, and a determinant shows that it is the only one"
+            }
+            Finding::Refuted(Refutation::NotAPrimitive {
+                coefficients,
+                derivatives,
+                independence,
+            }) => {
+                self.check_no_primitive(claim, coefficients, derivatives, &compared)?;
+                self.check_independence(independence, &compared)?;
+                "the only coefficients that match the derivative are not those of a primitive"
+            }
+            Finding::Unsettled(_) => return Ok(CheckOutcome::Open),
+        };
+        Ok(CheckOutcome::Confirmed(how.to_owned()))
+    }
+
+    fn compared(
+        &mut self,
+        claim: &ClaimRecord,
+        instance: &Instance,
+        terms: &[crate::program::NodeId],
+    ) -> Result<Compared, CheckError> {
+        let prepared = self.arithmetic.prepared;
+        let right = match (
+            prepared.program.operation(instance.target),
+            claim.known_by,
+            instance.known_by,
+        ) {
+            // The claim is about an element that the family knows by its derivative alone.
+            (
+                Operation::Primitive {
+                    derivative,
+                    terms: own,
+                    ..
+                },
+                KnownBy::Derivative,
+                KnownBy::Value,
+            ) => {
+                if own != terms {
+                    return wrong("the element was not sought in the terms of the claim");
+                }
+                self.value(*derivative)?
+            }
+            (_, known, given) if known == given => self.value(instance.target)?,
+            _ => return wrong("the target is not known in the way that the result says"),
+        };
+        let terms = terms
+            .iter()
+            .map(|node| self.value(*node))
+            .collect::<Result<Vec<_>, _>>()?;
+        let by_derivative = Self::by_derivative(claim);
+        let varying =
+            prepared.variable().is_some() && claim.coefficients != CoefficientKind::Constant;
+        let mut columns = Vec::new();
+        for term in &terms {
+            if by_derivative {
+                columns.push(self.arithmetic.derivative(term)?);
+            }
+            if !by_derivative || varying {
+                columns.push(term.clone());
+            }
+        }
+        let split = match claim.coefficients {
+            CoefficientKind::Constant => prepared.constants().start,
+            CoefficientKind::Polynomial | CoefficientKind::Rational => prepared.generators(),
+        };
+        Ok(Compared {
+            right,
+            terms,
+            columns,
+            paired: by_derivative && varying,
+            split,
+        })
+    }
+
+    fn check_shape(&self, claim: &ClaimRecord, compared: &Compared) -> Result<(), CheckError> {
+        let Some(system) = &claim.system else {
+            return wrong("the shape of the system is missing");
+        };
+        let split = compared.split;
+        let all = compared.columns.iter().chain([&compared.right]);
+        let monomials: BTreeSet<Vec<u32>> = all
+            .flat_map(|value| {
+                value
+                    .terms()
+                    .map(|(exponents, _)| exponents[..split].to_vec())
+            })
+            .collect();
+        if (system.rows, system.columns) != (monomials.len(), compared.columns.len()) {
+            return wrong(format!(
+                "the system has {} rows and {} columns, not {} and {}",
+                monomials.len(),
+                compared.columns.len(),
+                system.rows,
+                system.columns
+            ));
+        }
+        Ok(())
+    }
+
+    /// `Σ p b`, or its derivative, as numerator and denominator.
+    fn left_side(
+        &self,
+        claim: &ClaimRecord,
+        form: &[FormTerm],
+        compared: &Compared,
+    ) -> Result<(PublishedPolynomial, PublishedPolynomial), CheckError> {
+        let terms: Vec<&PublishedPolynomial> = compared.terms.iter().collect();
+        let (numerator, denominator) = self.arithmetic.form_value(form, &claim.terms, &terms)?;
+        if Self::by_derivative(claim) {
+            return Ok(self
+                .arithmetic
+                .quotient_derivative(&numerator, &denominator)?);
+        }
+        Ok((numerator, denominator))
+    }
+
+    fn check_form(
+        &self,
+        claim: &ClaimRecord,
+        form: &[FormTerm],
+        compared: &Compared,
+    ) -> Result<(), CheckError> {
+        let (numerator, denominator) = self.left_side(claim, form, compared)?;
+        if numerator != self.arithmetic.product(&compared.right, &denominator)? {
+            return wrong("the form was substituted and the two sides differ");
+        }
+        Ok(())
+    }
+
+    fn check_kernel(
+        &self,
+        claim: &ClaimRecord,
+        kernel: &[Vec<FormTerm>],
+        compared: &Compared,
+    ) -> Result<(), CheckError> {
+        if kernel.is_empty() {
+            return wrong("a family of solutions needs a kernel");
+        }
+        for form in kernel {
+            if form.is_empty() || !self.left_side(claim, form, compared)?.0.is_empty() {
+                return wrong("a form of the kernel does not vanish");
+            }
+        }
+        Ok(())
+    }
+
+    /// `Σ y · (row of the columns) = 0` and `Σ y · (row of the right side) = value ≠ 0`.
+    fn check_contradiction(
+        &self,
+        rows: &[CertificateRow],
+        value: &Coefficient,
+        compared: &Compared,
+    ) -> Result<(), CheckError> {
+        let mut multipliers: BTreeMap<&str, PublishedPolynomial> = BTreeMap::new();
+        for row in rows {
+            if !row.multiplier.is_polynomial() {
+                return wrong("a multiplier of the certificate has a denominator");
+            }
+            let lifted = self.arithmetic.lift(&row.multiplier.numerator);
+            if multipliers.insert(&row.monomial, lifted).is_some() {
+                return wrong("an equation stands twice in the certificate");
+            }
+        }
+        let combine = |element: &PublishedPolynomial| -> Result<PublishedPolynomial, CheckError> {
+            let mut sum = PublishedPolynomial::default();
+            for (monomial, cofactor) in self.split_rows(element, compared.split) {
+                if let Some(multiplier) = multipliers.get(monomial.as_str()) {
+                    sum = sum.plus(&self.arithmetic.product(multiplier, &cofactor)?);
+                }
+            }
+            Ok(sum)
+        };
+        for column in &compared.columns {
+            if !combine(column)?.is_empty() {
+                return wrong("the multiplied equations do not add up to 0 on the left");
+            }
+        }
+        let right = combine(&compared.right)?;
+        if right.is_empty()
+            || right != self.arithmetic.lift(&value.numerator)
+            || !value.is_polynomial()
+        {
+            return wrong("the multiplied equations do not add up to the given value on the right");
+        }
+        Ok(())
+    }
+
+    /// The rows of an element: the monomials in the first symbols, by name, with their cofactors in the rest.
+    fn split_rows(
+        &self,
+        element: &PublishedPolynomial,
+        split: usize,
+    ) -> BTreeMap<String, PublishedPolynomial> {
+        let names = &self.arithmetic.prepared.symbols;
+        let mut result: BTreeMap<String, PublishedPolynomial> = BTreeMap::new();
+        for (exponents, value) in element.terms() {
+            let mut cofactor = exponents.to_vec();
+            let mut leading = vec![0; exponents.len()];
+            leading[..split].copy_from_slice(&exponents[..split]);
+            cofactor[..split].fill(0);
+            result
+                .entry(row_name(&leading, names))
+                .or_default()
+                .add_term(cofactor, value.clone());
+        }
+        result
+    }
+
+    fn check_no_primitive(
+        &self,
+        claim: &ClaimRecord,
+        coefficients: &[FormTerm],
+        derivatives: &[FormTerm],
+        compared: &Compared,
+    ) -> Result<(), CheckError> {
+        if !compared.paired {
+            return wrong("the target is not one that is known by its derivative");
+        }
+        // Σ (p b′ + r b) = X′ …
+        let terms: Vec<&PublishedPolynomial> = compared.terms.iter().collect();
+        let derived: Vec<&PublishedPolynomial> = compared.columns.iter().step_by(2).collect();
+        let (n, d) = self
+            .arithmetic
+            .form_value(coefficients, &claim.terms, &derived)?;
+        let (m, e) = self
+            .arithmetic
+            .form_value(derivatives, &claim.terms, &terms)?;
+        let left = self
+            .arithmetic
+            .product(&n, &e)?
+            .plus(&self.arithmetic.product(&m, &d)?);
+        let common = self.arithmetic.product(&d, &e)?;
+        if left != self.arithmetic.product(&compared.right, &common)? {
+            return wrong("the coefficients do not match the derivative");
+        }
+        // … and r = p′ fails for some term.
+        let find = |form: &[FormTerm], term: &str| {
+            let found = form.iter().find(|entry| entry.term == term);
+            found.map(|entry| {
+                (
+                    self.arithmetic.lift(&entry.coefficient.numerator),
+                    self.arithmetic.lift(&entry.coefficient.denominator),
+                )
+            })
+        };
+        let zero = || (PublishedPolynomial::default(), self.arithmetic.one());
+        for term in &claim.terms {
+            let (n, d) = find(coefficients, term).unwrap_or_else(zero);
+            let (m, e) = find(derivatives, term).unwrap_or_else(zero);
+            let (n1, d1) = self.arithmetic.quotient_derivative(&n, &d)?;
+            if self.arithmetic.product(&n1, &e)? != self.arithmetic.product(&m, &d1)? {
+                return Ok(());
+            }
+        }
+        wrong("the coefficients are those of a primitive")
+    }
+
+    /// The determinant of the square block on the given rows must not vanish modulo the prime at the point.
+    fn check_independence(
+        &self,
+        independence: &IndependenceRecord,
+        compared: &Compared,
+    ) -> Result<(), CheckError> {
+        let IndependenceRecord { rows, prime, point } = independence;
+        if rows.len() != compared.columns.len()
+            || *prime < 3
+            || *prime >= 1 << 62
+            || PrimeField::new(*prime).is_none()
+        {
+            return wrong("the witness of uniqueness has the wrong shape");
+        }
+        let names = &self.arithmetic.prepared.symbols;
+        let place: Vec<u64> = names
+            .iter()
+            .map(|name| point.get(name).copied().unwrap_or(0))
+            .collect();
+        let mut matrix = vec![vec![0u64; rows.len()]; rows.len()];
+        for (column, element) in compared.columns.iter().enumerate() {
+            let entries = self.split_rows(element, compared.split);
+            for (row, monomial) in rows.iter().enumerate() {
+                let Some(entry) = entries.get(monomial) else {
+                    continue;
+                };
+                match entry.residue(*prime, &place) {
+                    Some(value) => matrix[row][column] = value,
+                    None => return wrong("the prime of the witness divides a denominator"),
+                }
+            }
+        }
+        if determinant_vanishes(matrix, *prime) {
+            return wrong("the determinant that should show uniqueness vanishes");
+        }
+        Ok(())
+    }
+}
+
+fn row_name(exponents: &[u32], names: &[String]) -> String {
+    let text = monomial_text(exponents, names);
+    if text.is_empty() {
+        "1".to_owned()
+    } else {
+        text
+    }
+}
+
+/// Are the coefficients of the kind that the claim admits?
+fn check_kind(form: &[FormTerm], kind: CoefficientKind) -> Result<(), CheckError> {
+    if kind != CoefficientKind::Rational
+        && !form.iter().all(|term| term.coefficient.is_polynomial())
+    {
+        return wrong("a coefficient has a denominator");
+    }
+    Ok(())
+}
+
+/// Plain elimination modulo a prime, written for the check alone.
+fn determinant_vanishes(mut matrix: Vec<Vec<u64>>, prime: u64) -> bool {
+    let p = u128::from(prime);
+    let mul = |a: u64, b: u64| (u128::from(a) * u128::from(b) % p) as u64;
+    let power = |mut base: u64, mut exponent: u64| {
+        let mut result = 1u64;
+        while exponent > 0 {
+            if exponent & 1 == 1 {
+                result = mul(result, base);
+            }
+            base = mul(base, base);
+            exponent >>= 1;
+        }
+        result
+    };
+    for step in 0..matrix.len() {
+        let Some(pivot) = (step..matrix.len()).find(|&row| matrix[row][step] != 0) else {
+            return true;
+        };
+        matrix.swap(step, pivot);
+        let inverse = power(matrix[step][step], prime - 2);
+        let (done, rest) = matrix.split_at_mut(step + 1);
+        let pivot_row = &done[step];
+        for row in rest.iter_mut().filter(|row| row[step] != 0) {
+            let factor = mul(row[step], inverse);
+            for (target, value) in row.iter_mut().zip(pivot_row).skip(step) {
+                *target = ((u128::from(*target) + p - u128::from(mul(factor, *value))) % p) as u64;
+            }
+        }
+    }
+    false
+}
+
+/// Do the weights make every element homogeneous, and the derivation too?
+pub(super) fn grading_is_right(
+    grading: &GradingRecord,
+    prepared: &Prepared,
+    elements: &[(PublishedPolynomial, Option<usize>)],
+) -> bool {
+    let Ok(modulus) = grading.modulus.parse::<BigInt>() else {
+        return false;
+    };
+    let Ok(derivation) = grading.derivation.parse::<BigInt>() else {
+        return false;
+    };
+    let weights: Option<Vec<BigInt>> = prepared
+        .symbols
+        .iter()
+        .map(|name| {
+            grading
+                .weights
+                .get(name)
+                .and_then(|weight| weight.parse().ok())
+        })
+        .collect();
+    let Some(weights) = weights else { return false };
+    let vanishes = |value: BigInt| {
+        if modulus.is_zero() {
+            value.is_zero()
+        } else {
+            (value % &modulus).is_zero()
+        }
+    };
+    let weight = |exponents: &[u32]| -> BigInt {
+        exponents
+            .iter()
+            .zip(&weights)
+            .map(|(e, w)| w * BigInt::from(*e))
+            .sum()
+    };
+    // The variable has derivative 1, of weight 0.
+    if prepared
+        .variable()
+        .is_some_and(|variable| !vanishes(&weights[variable] + &derivation))
+    {
+        return false;
+    }
+    elements.iter().all(|(element, generator)| {
+        let mut terms = element
+            .terms()
+            .map(|(exponents, _): (&[u32], &BigRational)| weight(exponents));
+        match generator {
+            Some(generator) => {
+                let expected = &weights[*generator] + &derivation;
+                terms.all(|found| vanishes(found - &expected))
+            }
+            None => match terms.next() {
+                Some(first) => terms.all(|found| vanishes(found - &first)),
+                None => true,
+            },
+        }
+    })
+}
