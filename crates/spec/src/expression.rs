@@ -14,8 +14,8 @@ pub struct Expr {
     pub span: Span,
 }
 
-/// The depth of the deepest tree: chains of operators count, as `a + b + c` leans to the left.
-pub const MAX_DEPTH: usize = 1000;
+/// The depth of the deepest tree. Chains of `*`, `/` and `-` count, as they lean to the left; sums are balanced.
+pub const MAX_DEPTH: usize = 500;
 
 /// The forms of an expression.
 #[derive(Clone, Debug, PartialEq, Eq)]

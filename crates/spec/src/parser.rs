@@ -271,11 +271,8 @@ impl<'a> Parser<'a> {
     fn tree(&self, start: usize, depth: usize, kind: ExprKind) -> Parsed<Tree> {
         let span = self.span_from(start);
         if depth > MAX_DEPTH {
-            return Err(Diagnostic::new(
-                format!("more than {MAX_DEPTH} operations in a chain"),
-                self.place.span(start, start),
-            )
-            .help("put parts of the chain into parentheses"));
+            let at = self.tokens[self.at.saturating_sub(1)].clone();
+            return Err(too_deep(self.place.span(at.start, at.end)));
         }
         Ok(Tree {
             expr: Expr::new(kind, span),
@@ -285,12 +282,13 @@ impl<'a> Parser<'a> {
 
     /// Operator precedence: operators that bind at least as tightly as `least`.
     fn binary(&mut self, least: u8) -> Parsed<Tree> {
+        if least == SUM {
+            return self.sum();
+        }
         let start = self.token().start;
         let mut left = self.unary(least)?;
         loop {
             let (binding, make): (u8, Make) = match self.sign() {
-                Some("+") => (SUM, ExprKind::Add),
-                Some("-") => (SUM, ExprKind::Sub),
                 Some("*") => (PRODUCT, ExprKind::Mul),
                 Some("/") => (PRODUCT, ExprKind::Div),
                 Some("^") => (POWER, ExprKind::Pow),
@@ -309,6 +307,20 @@ impl<'a> Parser<'a> {
             let depth = 1 + left.depth.max(right.depth);
             let kind = make(Box::new(left.expr), Box::new(right.expr));
             left = self.tree(start, depth, kind)?;
+        }
+    }
+
+    /// A chain of summands.
+    fn sum(&mut self) -> Parsed<Tree> {
+        let mut summands = vec![(Sign::Plus, self.binary(PRODUCT)?)];
+        loop {
+            let sign = match self.sign() {
+                Some("+") => Sign::Plus,
+                Some("-") => Sign::Minus,
+                _ => return balanced(summands),
+            };
+            self.advance();
+            summands.push((sign, self.binary(PRODUCT)?));
         }
     }
 
@@ -719,6 +731,65 @@ impl<'a> Parser<'a> {
             span: left.span,
         })
     }
+}
+
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Sign {
+    Plus,
+    Minus,
+}
+
+/// The tree of a chain of summands. The sign of the first is not looked at.
+///
+/// Short chains lean to the left. Long ones are cut at the `+` nearest to the middle, which changes neither the
+/// value nor the text, `a - b + (c - d) = a - b + c - d`, so that sums of thousands of terms make shallow trees.
+fn balanced(mut summands: Vec<(Sign, Tree)>) -> Parsed<Tree> {
+    const SHORT: usize = 16;
+    let length = summands.len();
+    let cut = (length > SHORT)
+        .then(|| {
+            (1..length)
+                .filter(|i| summands[*i].0 == Sign::Plus)
+                .min_by_key(|i| i.abs_diff(length / 2))
+        })
+        .flatten();
+    if let Some(cut) = cut {
+        let right = balanced(summands.split_off(cut))?;
+        let left = balanced(summands)?;
+        return joined(Sign::Plus, left, right);
+    }
+    let mut summands = summands.into_iter();
+    let Some((_, mut left)) = summands.next() else {
+        return Err(Diagnostic::new("expected an expression", Span::default()));
+    };
+    for (sign, right) in summands {
+        left = joined(sign, left, right)?;
+    }
+    Ok(left)
+}
+
+fn joined(sign: Sign, left: Tree, right: Tree) -> Parsed<Tree> {
+    let span = left.expr.span.to(right.expr.span);
+    let depth = 1 + left.depth.max(right.depth);
+    if depth > MAX_DEPTH {
+        return Err(too_deep(right.expr.span));
+    }
+    let make = match sign {
+        Sign::Plus => ExprKind::Add,
+        Sign::Minus => ExprKind::Sub,
+    };
+    Ok(Tree {
+        expr: Expr::new(make(Box::new(left.expr), Box::new(right.expr)), span),
+        depth,
+    })
+}
+
+fn too_deep(span: Span) -> Diagnostic {
+    Diagnostic::new(
+        format!("more than {MAX_DEPTH} operations inside each other"),
+        span,
+    )
+    .help("a chain of operators counts: put parts of it into parentheses")
 }
 
 fn pattern_of(expr: &Expr) -> Parsed<Pattern> {

@@ -44,7 +44,10 @@ impl Place {
             return Place::literal(file, start, token.len());
         };
         let mut from = quotes.len();
-        let to = token.len() - quotes.len();
+        // Tokens recovered after a syntax error may lack their closing quotes.
+        let to = token
+            .floor_char_boundary(token.len() - quotes.len())
+            .max(from);
         if quotes.len() == 3 {
             // A newline right after the opening quotes is not part of the text.
             let inner = &token[from..to];
@@ -111,7 +114,8 @@ impl Place {
     }
 }
 
-/// The segments of the inside of a basic string; the token is known to be valid.
+/// The segments of the inside of a basic string. An invalid escape sequence, in a token recovered after a syntax
+/// error, gets some place inside the token.
 fn segments_of(inner: &str, start: usize) -> Vec<Segment> {
     let mut segments = Vec::new();
     let (mut decoded, mut at) = (0, 0);
@@ -140,7 +144,7 @@ fn segments_of(inner: &str, start: usize) -> Vec<Segment> {
             }
             _ => 0,
         };
-        let raw_length = (2 + digits).min(rest.len());
+        let raw_length = rest.ceil_char_boundary(2 + digits);
         segments.push(Segment {
             decoded,
             raw: start + at,

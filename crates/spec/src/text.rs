@@ -6,7 +6,8 @@ use std::fmt::Write;
 /// The expression in canonical spacing: `u[3,0]`, `ratio(F,3)`, `D(A^2)`, `q'^2 - t*q^2`.
 ///
 /// Parentheses are those of the tree, and where the tree has none but needs some they are added, so that
-/// [`parse_expression`](crate::parse_expression) of the text gives the tree back.
+/// [`parse_expression`](crate::parse_expression) of the text gives the tree back: exactly if the tree was read
+/// from a text, and otherwise up to the grouping of sums, `a + (b - c) = a + b - c`.
 pub fn text_of(expr: &Expr) -> String {
     let mut out = String::new();
     write_expr(&mut out, expr, SUM, Spacing::Wide);
@@ -40,7 +41,7 @@ fn binding(expr: &Expr) -> u8 {
 fn write_expr(out: &mut String, expr: &Expr, least: u8, spacing: Spacing) {
     if binding(expr) < least {
         out.push('(');
-        write_bare(out, expr, SUM, Spacing::Wide);
+        write_bare(out, expr, SUM, spacing);
         out.push(')');
     } else {
         write_bare(out, expr, least, spacing);
@@ -154,13 +155,15 @@ fn write_bare(out: &mut String, expr: &Expr, least: u8, spacing: Spacing) {
 
 fn write_sum(out: &mut String, left: &Expr, sign: char, right: &Expr, spacing: Spacing) {
     write_expr(out, left, SUM, spacing);
+    // After a plus sign the parentheses of a sum change nothing.
+    let least = if sign == '+' { SUM } else { PRODUCT };
     match spacing {
         Spacing::Wide => {
             let _ = write!(out, " {sign} ");
         }
         Spacing::Narrow => out.push(sign),
     }
-    write_expr(out, right, PRODUCT, spacing);
+    write_expr(out, right, least, spacing);
 }
 
 fn write_sweep(out: &mut String, sweep: &Sweep) {
