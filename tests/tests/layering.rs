@@ -29,9 +29,15 @@ const ALLOWED: &[(&str, &[&str])] = &[
         "linform-report",
         &["linform-scalar", "linform-spec", "linform-engine"],
     ),
+    // The command line implements the control of `scalar`: limits and the interrupt.
     (
         "linform",
-        &["linform-spec", "linform-engine", "linform-report"],
+        &[
+            "linform-scalar",
+            "linform-spec",
+            "linform-engine",
+            "linform-report",
+        ],
     ),
 ];
 
