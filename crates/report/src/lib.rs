@@ -1,1 +1,16 @@
-//! report
+//! One result record in several formats: text, JSON, CSV, LaTeX, and scripts that re-check it elsewhere.
+//!
+//! *Invariant*: nothing is computed or decided here, and the same record gives the same bytes.
+
+mod csv;
+mod formula;
+mod json;
+#[cfg(test)]
+mod samples;
+mod sanitise;
+mod text;
+mod words;
+
+pub use crate::csv::csv;
+pub use json::{Digest, LARGEST_FILE, Read, ReadError, json, read_json};
+pub use text::{TextOptions, text};

@@ -1,0 +1,398 @@
+//! Expressions of a spec.
+
+use super::name::{name, power, power_may_follow, primes};
+use super::{Style, escape};
+use crate::sanitise::visible;
+use linform_scalar::Integer;
+use linform_spec::{Expr, ExprKind, Function, parse_expression};
+
+/// How tightly a formula holds together.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub(crate) enum Level {
+    /// A sum, a difference, an opposite.
+    Sum,
+    /// A product or a quotient.
+    Product,
+    /// A power, or a derivative that a further exponent must not follow.
+    Power,
+    /// Anything that needs no parentheses.
+    Atom,
+}
+
+/// A written formula.
+#[derive(Clone, Debug)]
+pub(crate) struct Written {
+    pub(crate) text: String,
+    pub(crate) level: Level,
+}
+
+impl Written {
+    fn new(text: impl Into<String>, level: Level) -> Written {
+        Written {
+            text: text.into(),
+            level,
+        }
+    }
+
+    /// The text, in parentheses if it holds together less tightly than asked.
+    pub(crate) fn at(&self, style: Style, level: Level) -> String {
+        if self.level >= level {
+            return self.text.clone();
+        }
+        match style {
+            Style::Latex => format!("\\bigl({}\\bigr)", self.text),
+            _ => format!("({})", self.text),
+        }
+    }
+}
+
+/// The formula of a text from a spec or a result file; a text that is no expression is shown as it is.
+pub(crate) fn expression(style: Style, text: &str) -> Written {
+    match (parse_expression(text), style) {
+        (Ok(expr), _) => write(style, &expr),
+        (Err(_), Style::Latex) => Written::new(
+            format!("\\text{{\\ttfamily {}}}", escape(text)),
+            Level::Atom,
+        ),
+        (Err(_), _) => Written::new(visible(text), Level::Atom),
+    }
+}
+
+// Trees of the parser have a bounded depth, so recursion is safe.
+fn write(style: Style, expr: &Expr) -> Written {
+    let at = |expr: &Expr, level| write(style, expr).at(style, level);
+    match &expr.kind {
+        ExprKind::Number(value) => Written::new(value.to_string(), Level::Atom),
+        ExprKind::Name {
+            base,
+            primes: order,
+        } => with_primes(style, &name(style, base), *order),
+        ExprKind::Neg(a) => Written::new(
+            format!("{}{}", style.minus(), at(a, Level::Product)),
+            Level::Sum,
+        ),
+        ExprKind::Add(a, b) => Written::new(
+            format!("{} + {}", at(a, Level::Sum), at(b, Level::Product)),
+            Level::Sum,
+        ),
+        ExprKind::Sub(a, b) => Written::new(
+            format!(
+                "{} {} {}",
+                at(a, Level::Sum),
+                style.minus(),
+                at(b, Level::Product)
+            ),
+            Level::Sum,
+        ),
+        ExprKind::Mul(a, b) => {
+            let (left, right) = (at(a, Level::Product), at(b, Level::Power));
+            Written::new(
+                format!("{left}{}{right}", times(style, a, b)),
+                Level::Product,
+            )
+        }
+        ExprKind::Div(a, b) => match style {
+            Style::Latex => Written::new(
+                format!("\\frac{{{}}}{{{}}}", at(a, Level::Sum), at(b, Level::Sum)),
+                Level::Power,
+            ),
+            _ => Written::new(
+                format!("{}/{}", at(a, Level::Product), at(b, Level::Power)),
+                Level::Product,
+            ),
+        },
+        ExprKind::Pow(a, b) => {
+            let exponent = at(b, Level::Sum);
+            Written::new(
+                format!("{}{}", at(a, Level::Atom), power(style, &exponent)),
+                Level::Power,
+            )
+        }
+        ExprKind::Group(a) => write(style, a),
+        ExprKind::Element {
+            family,
+            indices,
+            primes: order,
+        } => {
+            let indices = list(style, indices);
+            let element = match style {
+                Style::Latex if name(style, family).contains('_') => {
+                    format!("{{{}}}_{{{indices}}}", name(style, family))
+                }
+                Style::Latex => format!("{}_{{{indices}}}", name(style, family)),
+                _ => format!("{}[{indices}]", name(style, family)),
+            };
+            with_primes(style, &element, *order)
+        }
+        ExprKind::Call {
+            function,
+            arguments,
+            primes: order,
+        } => {
+            let call = call(style, *function, arguments);
+            match order {
+                0 => call,
+                _ => Written::new(
+                    format!("{}{}", call.at(style, Level::Atom), primes(style, *order)),
+                    if power_may_follow(style, *order) {
+                        Level::Atom
+                    } else {
+                        Level::Power
+                    },
+                ),
+            }
+        }
+        ExprKind::Apply {
+            function,
+            primes: order,
+            argument,
+        } => {
+            let function = with_primes(style, &name(style, function), *order).text;
+            Written::new(
+                format!("{function}({})", at(argument, Level::Sum)),
+                Level::Atom,
+            )
+        }
+        ExprKind::List(items) => Written::new(format!("[{}]", list(style, items)), Level::Atom),
+        ExprKind::Text(text) => Written::new(
+            style.pick(
+                format!("\"{}\"", visible(text)),
+                format!("\"{}\"", visible(text)),
+                format!("\\text{{{}}}", escape(text)),
+            ),
+            Level::Atom,
+        ),
+        ExprKind::For { body, sweep } => {
+            let (start, end) = bounds(style, expr);
+            Written::new(
+                format!(
+                    "{} for {} = {start}..{end}",
+                    at(body, Level::Sum),
+                    name(style, &sweep.variable)
+                ),
+                Level::Sum,
+            )
+        }
+    }
+}
+
+fn with_primes(style: Style, base: &str, order: u32) -> Written {
+    let level = if power_may_follow(style, order) {
+        Level::Atom
+    } else {
+        Level::Power
+    };
+    Written::new(format!("{base}{}", primes(style, order)), level)
+}
+
+fn list(style: Style, items: &[Expr]) -> String {
+    let items: Vec<String> = items.iter().map(|item| write(style, item).text).collect();
+    items.join(",")
+}
+
+fn bounds(style: Style, expr: &Expr) -> (String, String) {
+    match &expr.kind {
+        ExprKind::For { sweep, .. } => (
+            write(style, &sweep.start).text,
+            sweep
+                .end
+                .as_ref()
+                .map_or(String::new(), |end| write(style, end).text),
+        ),
+        _ => (String::new(), String::new()),
+    }
+}
+
+/// What stands between two factors.
+fn times(style: Style, left: &Expr, right: &Expr) -> &'static str {
+    let number = matches!(left.kind, ExprKind::Number(_)) && starts_with_letter(right);
+    match style {
+        Style::Ascii => "*",
+        Style::Unicode if number || is_letter_power(left) && is_letter_power(right) => "",
+        Style::Unicode => "·",
+        Style::Latex if starts_with_letter(right) => "\\,",
+        Style::Latex => " \\cdot ",
+    }
+}
+
+fn starts_with_letter(expr: &Expr) -> bool {
+    match &expr.kind {
+        ExprKind::Name { .. } | ExprKind::Element { .. } | ExprKind::Call { .. } => true,
+        ExprKind::Pow(base, _) => starts_with_letter(base),
+        ExprKind::Group(_) => true,
+        _ => false,
+    }
+}
+
+/// Is this a product of powers of one-letter names, which can stand side by side?
+fn is_letter_power(expr: &Expr) -> bool {
+    match &expr.kind {
+        ExprKind::Name { base, .. } => base.chars().nth(1).is_none(),
+        ExprKind::Pow(base, _) => is_letter_power(base),
+        ExprKind::Mul(left, right) => {
+            is_letter_power(right)
+                && (is_letter_power(left) || matches!(left.kind, ExprKind::Number(_)))
+        }
+        _ => false,
+    }
+}
+
+fn call(style: Style, function: Function, arguments: &[Expr]) -> Written {
+    let derivative = |law: &Expr, order: u32| {
+        let base = write(style, law).at(style, Level::Atom);
+        with_primes(style, &base, order)
+    };
+    match (function, arguments) {
+        (Function::Ratio, [law, order]) if small(order).is_some() => {
+            let order = small(order).unwrap_or_default();
+            let (above, below) = (derivative(law, order).text, derivative(law, 0).text);
+            match style {
+                _ if order == 0 => Written::new("1", Level::Atom),
+                Style::Latex => Written::new(format!("\\frac{{{above}}}{{{below}}}"), Level::Power),
+                _ => Written::new(format!("{above}/{below}"), Level::Product),
+            }
+        }
+        (Function::Derivative, [law, order]) if small(order).is_some() => {
+            derivative(law, small(order).unwrap_or_default())
+        }
+        (Function::D, [argument]) if style != Style::Ascii => Written::new(
+            match style {
+                Style::Latex => format!("\\bigl({}\\bigr)'", write(style, argument).text),
+                _ => format!("({})′", write(style, argument).text),
+            },
+            Level::Atom,
+        ),
+        (Function::Minor, [family, rows, columns]) if style != Style::Ascii => {
+            let (family, rows, columns) = (
+                write(style, family).text,
+                bare(style, rows),
+                bare(style, columns),
+            );
+            match style {
+                Style::Latex => Written::new(
+                    format!("\\det\\bigl({family}_{{ik}}\\bigr)_{{i={rows};\\,k={columns}}}"),
+                    Level::Power,
+                ),
+                _ => Written::new(format!("det {family}[{rows}|{columns}]"), Level::Power),
+            }
+        }
+        (Function::Sum, [body]) if style == Style::Latex => match &body.kind {
+            ExprKind::For {
+                body: summand,
+                sweep,
+            } => {
+                let (start, end) = bounds(style, body);
+                let summand = write(style, summand).at(style, Level::Product);
+                let variable = name(style, &sweep.variable);
+                Written::new(
+                    format!("\\sum_{{{variable}={start}}}^{{{end}}} {summand}"),
+                    Level::Sum,
+                )
+            }
+            _ => write(style, body),
+        },
+        (Function::Sqrt, [argument]) if style == Style::Latex => Written::new(
+            format!("\\sqrt{{{}}}", write(style, argument).text),
+            Level::Atom,
+        ),
+        _ => {
+            let name = style.pick(
+                function.name().to_owned(),
+                function.name().to_owned(),
+                format!("\\operatorname{{{}}}", function.name()),
+            );
+            Written::new(format!("{name}({})", list(style, arguments)), Level::Atom)
+        }
+    }
+}
+
+/// The items of a list without its brackets.
+fn bare(style: Style, expr: &Expr) -> String {
+    match &expr.kind {
+        ExprKind::List(items) => list(style, items),
+        _ => write(style, expr).text,
+    }
+}
+
+fn small(expr: &Expr) -> Option<u32> {
+    match &expr.kind {
+        ExprKind::Number(value) => {
+            Integer::to_i64(value).and_then(|value| u32::try_from(value).ok())
+        }
+        ExprKind::Group(inner) => small(inner),
+        _ => None,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn terms_are_written_as_mathematicians_do() {
+        for (text, ascii, unicode, latex) in [
+            ("ratio(F,4)", "F''''/F", "F⁗/F", "\\frac{F^{(4)}}{F}"),
+            ("ratio(F,2)", "F''/F", "F″/F", "\\frac{F''}{F}"),
+            (
+                "ratio(F,7)^2",
+                "(F^(7)/F)^2",
+                "(F⁽⁷⁾/F)²",
+                "\\bigl(\\frac{F^{(7)}}{F}\\bigr)^{2}",
+            ),
+            ("u[3,0]", "u[3,0]", "u[3,0]", "u_{3,0}"),
+            (
+                "u[0,0]*u[1,1]",
+                "u[0,0]*u[1,1]",
+                "u[0,0]·u[1,1]",
+                "u_{0,0}\\,u_{1,1}",
+            ),
+            ("q^2*q'^4", "q^2*q'^4", "q²q′⁴", "q^{2}\\,q'^{4}"),
+            ("D(A^2)", "D(A^2)", "(A²)′", "\\bigl(A^{2}\\bigr)'"),
+            (
+                "minor(u,[0,1],[0,2])",
+                "minor(u,[0,1],[0,2])",
+                "det u[0,1|0,2]",
+                "\\det\\bigl(u_{ik}\\bigr)_{i=0,1;\\,k=0,2}",
+            ),
+            (
+                "3*t*(q + 1)",
+                "3*t*(q + 1)",
+                "3t·(q + 1)",
+                "3\\,t\\,\\bigl(q + 1\\bigr)",
+            ),
+            (
+                "a - (b - c)",
+                "a - (b - c)",
+                "a − (b − c)",
+                "a - \\bigl(b - c\\bigr)",
+            ),
+            ("a/(b*c)", "a/(b*c)", "a/(bc)", "\\frac{a}{b\\,c}"),
+            ("-g2^3", "-g2^3", "−g2³", "-g_{2}^{3}"),
+            ("℘'^2", "℘'^2", "℘′²", "\\wp'^{2}"),
+            (
+                "q'''''^2",
+                "(q^(5))^2",
+                "(q⁽⁵⁾)²",
+                "\\bigl(q^{(5)}\\bigr)^{2}",
+            ),
+            ("1", "1", "1", "1"),
+        ] {
+            assert_eq!(expression(Style::Ascii, text).text, ascii);
+            assert_eq!(expression(Style::Unicode, text).text, unicode);
+            assert_eq!(expression(Style::Latex, text).text, latex);
+        }
+    }
+
+    #[test]
+    fn a_text_that_is_no_expression_is_shown_harmlessly() {
+        let text = "\\input{x} \u{1b}[2J";
+        assert_eq!(
+            expression(Style::Unicode, text).text,
+            "\\input{x} \\u{1b}[2J"
+        );
+        assert_eq!(
+            expression(Style::Latex, text).text,
+            "\\text{\\ttfamily \\textbackslash{}input\\{x\\} [U+001B][2J}"
+        );
+    }
+}

@@ -1,0 +1,392 @@
+use super::*;
+use crate::samples;
+use indexmap::IndexMap;
+use linform_engine::published::{Coefficient, PublishedPolynomial};
+use linform_engine::record::*;
+use linform_scalar::published::{BigInt, BigRational};
+use proptest::collection::vec;
+use proptest::prelude::*;
+use std::sync::Arc;
+
+fn polynomials() -> impl Strategy<Value = PublishedPolynomial> {
+    let value = (any::<i128>(), 1..i64::MAX, 0u32..4)
+        .prop_map(|(n, d, power)| BigRational::new(BigInt::from(n).pow(power), BigInt::from(d)));
+    vec((vec(0u32..40, 1), value), 0..4).prop_map(|terms| {
+        let mut sum = PublishedPolynomial::default();
+        terms
+            .into_iter()
+            .for_each(|(exponents, value)| sum.add_term(exponents, value));
+        sum
+    })
+}
+
+fn coefficients() -> impl Strategy<Value = Coefficient> {
+    let one = PublishedPolynomial::constant(1, BigInt::from(1).into());
+    let denominators = prop_oneof![
+        3 => Just(one),
+        1 => polynomials().prop_map(|mut p| {
+            // Of higher degree than any other term, so that it is neither 0 nor a constant.
+            p.add_term(vec![50], BigInt::from(3).into());
+            p
+        })
+    ];
+    (polynomials(), denominators).prop_map(|(numerator, denominator)| Coefficient {
+        names: Arc::from(["t".to_owned()]),
+        numerator,
+        denominator,
+    })
+}
+
+/// Texts with quotes, backslashes, control characters and characters outside the basic plane.
+fn texts() -> impl Strategy<Value = String> {
+    prop_oneof![
+        Just("ratio(F,3)".to_owned()),
+        vec(
+            prop_oneof![
+                Just('"'),
+                Just('\\'),
+                Just('\n'),
+                Just('\u{1b}'),
+                any::<char>()
+            ],
+            0..6
+        )
+        .prop_map(|characters| characters.into_iter().collect())
+    ]
+}
+
+fn forms() -> impl Strategy<Value = Vec<FormTerm>> {
+    vec(
+        (texts(), coefficients()).prop_map(|(term, coefficient)| FormTerm { term, coefficient }),
+        0..3,
+    )
+}
+
+fn witnesses() -> impl Strategy<Value = IndependenceRecord> {
+    (vec(texts(), 0..3), any::<u64>(), any::<u64>()).prop_map(|(rows, prime, value)| {
+        IndependenceRecord {
+            rows,
+            prime,
+            point: IndexMap::from([("t".to_owned(), value)]),
+        }
+    })
+}
+
+fn findings() -> impl Strategy<Value = Finding> {
+    let row = (texts(), coefficients()).prop_map(|(monomial, multiplier)| CertificateRow {
+        monomial,
+        multiplier,
+    });
+    prop_oneof![
+        forms().prop_map(|form| Finding::Holds { form }),
+        (vec(row, 0..3), coefficients())
+            .prop_map(|(rows, value)| Finding::Refuted(Refutation::Contradiction { rows, value })),
+        (forms(), witnesses()).prop_map(|(form, independence)| {
+            Finding::Refuted(Refutation::OtherCoefficients { form, independence })
+        }),
+        (forms(), forms(), witnesses()).prop_map(|(coefficients, derivatives, independence)| {
+            Finding::Refuted(Refutation::NotAPrimitive {
+                coefficients,
+                derivatives,
+                independence,
+            })
+        }),
+        (forms(), vec(forms(), 0..3))
+            .prop_map(|(particular, kernel)| Finding::Undetermined { particular, kernel }),
+        (0usize..6, texts()).prop_map(|(kind, reason)| {
+            let stop = [
+                StopKind::Time,
+                StopKind::Memory,
+                StopKind::Interrupt,
+                StopKind::Size,
+                StopKind::Degree,
+                StopKind::Prerequisite,
+            ][kind];
+            Finding::Unsettled(Unsettled { stop, reason })
+        }),
+    ]
+}
+
+fn claims() -> impl Strategy<Value = ClaimRecord> {
+    let system = (texts(), texts(), any::<usize>(), any::<usize>()).prop_map(
+        |(method, solver, rows, columns)| SystemRecord {
+            method,
+            solver,
+            rows,
+            columns,
+        },
+    );
+    let kinds = (any::<bool>(), 0usize..3, 0usize..4);
+    let asked = (
+        texts(),
+        vec((texts(), any::<i64>()), 0..3),
+        texts(),
+        vec(texts(), 0..3),
+    );
+    (asked, kinds, proptest::option::of(system), findings()).prop_map(
+        |((name, index, target, terms), (derivative, coefficients, expected), system, finding)| {
+            ClaimRecord {
+                name,
+                index: index.into_iter().collect(),
+                target,
+                known_by: if derivative {
+                    KnownBy::Derivative
+                } else {
+                    KnownBy::Value
+                },
+                terms,
+                coefficients: [
+                    CoefficientKind::Polynomial,
+                    CoefficientKind::Rational,
+                    CoefficientKind::Constant,
+                ][coefficients],
+                expected: [
+                    Verdict::Holds,
+                    Verdict::Refuted,
+                    Verdict::Undetermined,
+                    Verdict::Unsettled,
+                ][expected],
+                system,
+                finding,
+            }
+        },
+    )
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(48))]
+
+    #[test]
+    fn a_record_is_read_back_as_it_was_written(claims in vec(claims(), 0..4), title in proptest::option::of(texts())) {
+        let mut record = samples::record();
+        record.claims.extend(claims);
+        record.spec.title = title;
+        let read = read_json(&json(&record)).unwrap();
+        prop_assert_eq!(read.digest, Digest::Agrees);
+        prop_assert_eq!(read.record, record);
+        prop_assert!(read.notes.is_empty(), "{:?}", read.notes);
+    }
+
+    #[test]
+    fn no_text_makes_the_reader_panic(position: prop::sample::Index, cut: prop::sample::Index, insert in texts()) {
+        let text = json(&samples::record());
+        let (from, to) = (position.index(text.len()), cut.index(text.len()));
+        let (from, to) = (text.floor_char_boundary(from.min(to)), text.floor_char_boundary(from.max(to)));
+        let changed = format!("{}{insert}{}", &text[..from], &text[to..]);
+        if let Ok(read) = read_json(&changed) {
+            prop_assert!(read.digest != Digest::Agrees || read.record == samples::record());
+        }
+        let _ = read_json(&insert);
+    }
+}
+
+#[test]
+fn the_contract_fields_come_first_and_in_order() {
+    let mut record = samples::record();
+    record.claims.drain(..1);
+    record.claims.truncate(1);
+    record.gradings.clear();
+    record.primitives.clear();
+    record.spec.sources.clear();
+    let text = json(&record);
+    let (body, digest) = text.rsplit_once(",\n  \"digest\": ").unwrap();
+    assert_eq!(
+        body,
+        r#"{
+  "format": "linform-result/1",
+  "program": "linform 0.1.0",
+  "spec": {
+    "title": "Traces of the Airy kernel",
+    "blake3": "abababababababababababababababababababababababababababababababab",
+    "sources": []
+  },
+  "claims": [
+    {
+      "name": "trace",
+      "index": {"j": 3, "k": 0},
+      "verdict": "holds",
+      "system": {"method": "matching", "rows": 33, "columns": 8, "solver": "fraction-free"},
+      "form": [
+        {"term": "ratio(F,1)", "coefficient": "7/12"},
+        {"term": "ratio(F,2)", "coefficient": "1/3*t"},
+        {"term": "ratio(F,4)", "coefficient": "1/24"}
+      ],
+      "evidence": {"kind": "proved"},
+      "target": "u[3,0]",
+      "known_by": "derivative",
+      "terms": ["ratio(F,1)", "ratio(F,2)", "ratio(F,3)", "ratio(F,4)"],
+      "coefficients": "polynomial",
+      "expected": "holds"
+    }
+  ],
+  "gradings": [],
+  "primitives": []"#
+    );
+    assert_eq!(digest.len(), "\"\"\n}\n".len() + 64);
+}
+
+#[test]
+fn every_changed_digit_is_noticed() {
+    let text = json(&samples::record());
+    let digits = text.char_indices().filter(|(_, c)| c.is_ascii_digit());
+    let mut flipped = 0;
+    for (position, digit) in digits {
+        let other = if digit == '7' { '4' } else { '7' };
+        let changed = format!("{}{other}{}", &text[..position], &text[position + 1..]);
+        if let Ok(read) = read_json(&changed) {
+            assert!(
+                matches!(read.digest, Digest::Differs { .. }),
+                "byte {position}"
+            );
+        }
+        flipped += 1;
+    }
+    assert!(flipped > 200, "{flipped}");
+}
+
+#[test]
+fn layout_does_not_matter_for_the_digest() {
+    let text = json(&samples::record());
+    let squeezed: String = text.lines().map(str::trim).collect();
+    assert_eq!(read_json(&squeezed).unwrap().digest, Digest::Agrees);
+    let bom = format!("\u{feff}{text}");
+    assert_eq!(read_json(&bom).unwrap().digest, Digest::Agrees);
+}
+
+const CONTRACT_ONLY: &str = r#"{ "format": "linform-result/1", "program": "linform 0.1.0",
+  "spec": {"title": "Traces", "blake3": "00"},
+  "claims": [ { "name": "trace", "index": {"j": 3, "k": 0}, "verdict": "holds",
+      "system": {"method": "matching", "rows": 33, "columns": 8},
+      "form": [ {"term": "ratio(F,1)", "coefficient": "7/12"}, {"term": "ratio(F,2)", "coefficient": "1/3*t"} ],
+      "evidence": { "kind": "proved" } } ] }"#;
+
+#[test]
+fn a_file_with_the_contract_fields_alone_is_read_and_what_it_lacks_is_listed() {
+    let read = read_json(CONTRACT_ONLY).unwrap();
+    assert_eq!(read.digest, Digest::Absent);
+    let claim = &read.record.claims[0];
+    assert_eq!(claim.index, samples::index(&[("j", 3), ("k", 0)]));
+    let Finding::Holds { form } = &claim.finding else {
+        panic!("{claim:?}");
+    };
+    assert_eq!(form[1].coefficient, samples::polynomial(&[(1, 3, 1)]));
+    for path in [
+        "spec.sources",
+        "claims[0].target",
+        "claims[0].terms",
+        "claims[0].system.solver",
+        "gradings",
+    ] {
+        assert!(
+            read.missing.iter().any(|missing| missing == path),
+            "{path}: {:?}",
+            read.missing
+        );
+    }
+}
+
+#[test]
+fn errors_say_what_where_and_what_to_do() {
+    let cases = [
+        (
+            "{\n  \"format\": \"linform-result/1\",\n  oops}",
+            "line 3, column 3: key must be a string",
+        ),
+        ("{}", "the document: the field \"format\" is missing"),
+        ("[1]", "the document: expected an object, found a list"),
+        (
+            r#"{"format": "linform-result/2"}"#,
+            "format: the format is \"linform-result/2\"",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [{}]}"#,
+            "claims[0]: the field \"verdict\" is missing",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [{"name": 1, "verdict": "holds"}]}"#,
+            "claims[0].name: expected a string, found a number",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [{"name": "a", "verdict": "true"}]}"#,
+            "claims[0].verdict: \"true\" is none of \"holds\", \"refuted\"",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [{"name": "a", "verdict": "holds", "form": [{"term": "x", "coefficient": "1/0"}]}]}"#,
+            "claims[0].form[0].coefficient: \"1/0\" is no coefficient",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [{"name": "a", "verdict": "holds", "index": {"a b": 1.5}}]}"#,
+            "claims[0].index[\"a b\"]: expected an integer",
+        ),
+        (
+            r#"{"format": "linform-result/1", "claims": [], "claims": []}"#,
+            "line 1, column",
+        ),
+    ];
+    for (text, expected) in cases {
+        let error = read_json(text).unwrap_err();
+        assert!(error.to_string().starts_with(expected), "{error}");
+        assert!(!error.help().is_empty());
+    }
+}
+
+#[test]
+fn hostile_files_end_in_an_error() {
+    let with = |coefficient: &str| {
+        format!(
+            r#"{{"format": "linform-result/1", "claims": [{{"name": "a", "verdict": "holds",
+               "form": [{{"term": "x", "coefficient": "{coefficient}"}}]}}]}}"#
+        )
+    };
+    for coefficient in [
+        "(((((((((1",
+        "t^99999999999999999999",
+        "t^4294967295*t",
+        "1/2/3/4/5",
+        "(t+1)^9",
+        "t+",
+        "--t",
+        "1 2",
+        "1/(t - t)",
+        "",
+        "q'^",
+        "½",
+        &"9".repeat(100_001),
+    ] {
+        assert!(
+            read_json(&with(coefficient)).is_err(),
+            "{}",
+            &coefficient[..coefficient.len().min(20)]
+        );
+    }
+    assert!(read_json(&with("1/2*t^2 - 3")).is_ok());
+    assert!(read_json(&"{\"a\":".repeat(100_000)).is_err());
+    // A name has a place in every exponent vector: many names and many terms must not multiply into memory.
+    let names: String = (0..200).map(|i| format!("x{i} + ")).collect();
+    assert!(read_json(&with(&format!("{names}1"))).is_err());
+}
+
+#[test]
+fn a_missing_certificate_and_a_left_over_form_are_reported() {
+    let flipped = CONTRACT_ONLY
+        .replace("\"holds\"", "\"refuted\"")
+        .replace("\"proved\"", "\"probabilistic\"");
+    let read = read_json(&flipped).unwrap();
+    assert!(read.missing.contains(&"claims[0].certificate".to_owned()));
+    assert!(
+        read.notes
+            .iter()
+            .any(|note| note.contains("claims[0].form was not read")),
+        "{:?}",
+        read.notes
+    );
+    assert!(
+        read.notes
+            .iter()
+            .any(|note| note.contains("\"probabilistic\"")),
+        "{:?}",
+        read.notes
+    );
+    let typo = CONTRACT_ONLY.replace("\"evidence\"", "\"evidnce\"");
+    assert!(read_json(&typo).unwrap().notes[0].contains("claims[0].evidnce"));
+}
