@@ -5,6 +5,7 @@
 mod csv;
 mod formula;
 mod json;
+mod latex;
 #[cfg(test)]
 mod samples;
 mod sanitise;
@@ -13,4 +14,5 @@ mod words;
 
 pub use crate::csv::csv;
 pub use json::{Digest, LARGEST_FILE, Read, ReadError, json, read_json};
+pub use latex::latex;
 pub use text::{TextOptions, text};

@@ -1,7 +1,7 @@
 //! What a finding says, in words; shared by the text and the LaTeX report.
 
 use crate::formula::{
-    Level, Style, coefficient, escape, expression, folded_terms, form_line, signed,
+    Level, Style, coefficient, escape, expression, folded_terms, form_line, signed, subscripted,
 };
 use crate::sanitise::visible;
 use linform_engine::published::Coefficient;
@@ -287,6 +287,30 @@ fn factor(style: Style, multiplier: &Coefficient) -> (bool, Option<String>) {
         return (false, Some(whole.at(style, Level::Product)));
     };
     (parts.negative, Some(size))
+}
+
+/// As many letters as the kernel has vectors, none of them a name of the ring.
+pub(crate) fn letters(style: Style, claim: &ClaimRecord, count: usize) -> Vec<String> {
+    let used = names_of(claim);
+    let letter = ["c", "k", "m", "s", "w", "free"]
+        .into_iter()
+        .find(|letter| !used.iter().any(|name| name.starts_with(letter)))
+        .unwrap_or("free");
+    (1..=count)
+        .map(|number| subscripted(style, letter, number))
+        .collect()
+}
+
+fn names_of(claim: &ClaimRecord) -> Vec<String> {
+    match &claim.finding {
+        Finding::Undetermined { particular, kernel } => {
+            let parts = particular.iter().chain(kernel.iter().flatten());
+            parts
+                .flat_map(|part| part.coefficient.names.iter().cloned())
+                .collect()
+        }
+        _ => Vec::new(),
+    }
 }
 
 /// The functions that the letters of a family may be.

@@ -5,7 +5,14 @@
 /// What a plain LaTeX installation has no glyph for is written as its code point, `[U+2603]`.
 pub(crate) fn escape(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
+    let mut last = ' ';
     for c in text.chars() {
+        // Kept apart where two of them would form a ligature.
+        let joins = |c: char| "`'-<>,\"?!".contains(c);
+        if joins(c) && joins(last) {
+            out.push_str("{}");
+        }
+        last = c;
         match c {
             '\\' => out.push_str("\\textbackslash{}"),
             '{' | '}' | '%' | '#' | '&' | '_' | '$' => {
@@ -14,11 +21,6 @@ pub(crate) fn escape(text: &str) -> String {
             }
             '^' => out.push_str("\\textasciicircum{}"),
             '~' => out.push_str("\\textasciitilde{}"),
-            // Kept apart, so that they form no ligature.
-            '`' | '\'' | '-' | '<' | '>' | ',' | '"' | '?' | '!' => {
-                out.push(c);
-                out.push_str("{}");
-            }
             '\n' | '\r' | '\t' | '\u{a0}' => out.push(' '),
             ' '..='~' => out.push(c),
             '′' => out.push_str("\\ensuremath{'}"),

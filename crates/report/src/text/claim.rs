@@ -3,7 +3,7 @@
 use super::TextOptions;
 use super::paint::Paint;
 use super::wrap::{columns, fill, sentence};
-use crate::formula::{Level, Product, combination, expression, form, subscripted};
+use crate::formula::{Level, Product, combination, expression, form};
 use crate::words;
 use linform_engine::record::{ClaimRecord, Finding, FormTerm, Refutation};
 
@@ -22,7 +22,7 @@ pub(super) fn write(out: &mut String, options: &TextOptions, claim: &ClaimRecord
     match &claim.finding {
         Finding::Holds { form: found } => identity(out, options, &target, widest, found),
         Finding::Undetermined { particular, kernel } => {
-            let letters = letters(options, claim, kernel.len());
+            let letters = words::letters(style, claim, kernel.len());
             let multiples: Vec<(String, &[FormTerm])> = letters
                 .iter()
                 .cloned()
@@ -135,28 +135,4 @@ fn status(options: &TextOptions, claim: &ClaimRecord) -> String {
     );
     parts.push(words::evidence(style, claim));
     parts.join(words::separator(style))
-}
-
-/// As many letters as the kernel has vectors, none of them a name of the ring.
-fn letters(options: &TextOptions, claim: &ClaimRecord, count: usize) -> Vec<String> {
-    let used = names_of(claim);
-    let letter = ["c", "k", "m", "s", "w", "free"]
-        .into_iter()
-        .find(|letter| !used.iter().any(|name| name.starts_with(letter)))
-        .unwrap_or("free");
-    (1..=count)
-        .map(|number| subscripted(options.style(), letter, number))
-        .collect()
-}
-
-fn names_of(claim: &ClaimRecord) -> Vec<String> {
-    match &claim.finding {
-        Finding::Undetermined { particular, kernel } => {
-            let parts = particular.iter().chain(kernel.iter().flatten());
-            parts
-                .flat_map(|part| part.coefficient.names.iter().cloned())
-                .collect()
-        }
-        _ => Vec::new(),
-    }
 }
