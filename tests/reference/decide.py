@@ -1,7 +1,10 @@
 """Decides the claims of spec files with FLINT (python-flint), sharing no code with the program.
 
     decide.py SPEC…                       prints every verdict and form
+    decide.py --claim NAME SPEC…          prints those of the claims whose name has NAME in it
     decide.py --against RESULT.json SPEC  compares with what the program wrote
+    decide.py --golden SPEC…              writes the decisions to tests/golden, one file for each spec
+    decide.py --check SPEC…               decides afresh and compares with those files
 
 Matching as in any textbook: expand target and terms in the free ring, compare coefficients of the monomials in the
 generators, and reduce the rows one after another over the polynomials in the remaining symbols.
@@ -247,7 +250,10 @@ class Spec:
             return ("refuted", None)
         if outcome[0] == "family":
             return ("undetermined", outcome[1])
-        return ("holds" if self.admitted(outcome[1], kind) else "refuted", outcome[1])
+        if self.admitted(outcome[1], kind):
+            return ("holds", outcome[1])
+        # Constants that do not exist are no form; a form with denominators is worth showing.
+        return ("refuted", None if kind == "constant" else outcome[1])
 
     def decide_derivative(self, derivative, terms, kind="polynomial"):
         """Unknown coefficients p and their derivatives r: the sum of p·b′ + r·b is the derivative."""
@@ -398,7 +404,43 @@ def against(spec, path):
     return agreed
 
 
+def golden(spec):
+    """One line of JSON for each decision; a form as positions in the list of terms with numerator and denominator."""
+    lines = []
+    for name, env, _, verdict, terms, form in spec.decisions():
+        line = {"name": name, "index": env, "verdict": verdict}
+        if verdict == "undetermined":
+            line["kernel"] = len(form)
+        elif form is not None:
+            line["terms"] = len(terms)
+            line["form"] = [
+                [i, spec.text((n, spec.one)), spec.text((d, spec.one))]
+                for i, (n, d) in enumerate(form)
+                if not n.is_zero()
+            ]
+        lines.append(json.dumps(line, ensure_ascii=False))
+    return "[\n" + ",\n".join(lines) + "\n]\n"
+
+
+def golden_files(paths, check):
+    folder = os.path.join(os.path.dirname(os.path.abspath(__file__)), "..", "golden")
+    for path in paths:
+        made = golden(Spec(path))
+        name = os.path.join(folder, os.path.basename(path).replace(".toml", ".json"))
+        if check:
+            with open(name, encoding="utf-8") as file:
+                if file.read() != made:
+                    sys.exit(f"{name} differs from what is decided afresh")
+        else:
+            with open(name, "w", encoding="utf-8") as file:
+                file.write(made)
+    print(f"{'checked' if check else 'wrote'} {len(paths)} files of decisions")
+
+
 def main(arguments):
+    if arguments[0] in ("--golden", "--check"):
+        golden_files(arguments[1:], arguments[0] == "--check")
+        return
     if arguments[0] == "--against":
         agreed = against(Spec(arguments[2]), arguments[1])
         print(f"{arguments[2]}: {agreed} decisions agree")
