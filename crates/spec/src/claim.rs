@@ -160,10 +160,18 @@ impl Claim {
         through: Option<i64>,
         limit: usize,
     ) -> Result<Vec<Environment>, Diagnostic> {
-        let mut walk = Walk::new(self, through, limit, limit.saturating_mul(4));
-        walk.run(0)
+        // Counted first, so that a sweep that is too long takes no memory.
+        let budget = limit.saturating_mul(4);
+        let mut found = Vec::new();
+        let mut count = Walk::new(self, through, limit, budget);
+        count
+            .run(0, &mut |_| {})
+            .and_then(|()| {
+                found.reserve_exact(count.found);
+                Walk::new(self, through, limit, budget).run(0, &mut |env| found.push(env.clone()))
+            })
             .map_err(|stop| stop.into_diagnostic(self, limit))?;
-        walk.finish()
+        self.not_empty(found)
     }
 
     /// The instances of a closed claim, or nothing if finding them takes more than `budget` steps.
@@ -171,12 +179,24 @@ impl Claim {
         &self,
         budget: usize,
     ) -> Result<Option<Vec<Environment>>, Diagnostic> {
-        let mut walk = Walk::new(self, None, budget, budget);
-        match walk.run(0) {
-            Ok(()) => walk.finish().map(Some),
+        let mut found = Vec::new();
+        match Walk::new(self, None, budget, budget).run(0, &mut |env| found.push(env.clone())) {
+            Ok(()) => self.not_empty(found).map(Some),
             Err(WalkStop::TooMany(_)) => Ok(None),
             Err(WalkStop::Wrong(diagnostic)) => Err(diagnostic),
         }
+    }
+
+    fn not_empty(&self, found: Vec<Environment>) -> Result<Vec<Environment>, Diagnostic> {
+        if found.is_empty() {
+            return Err(Diagnostic::new(
+                format!("the sweep of claim `{}` is empty", self.name),
+                self.sweep_span(),
+            )
+            .label("no values of the indices are left")
+            .help("let every range end at or after its start, and check the conditions"));
+        }
+        Ok(found)
     }
 
     /// Where the sweeps stand, or the claim if it has none.
@@ -197,7 +217,7 @@ struct Walk<'a> {
     /// The most values of indices tried.
     budget: usize,
     tried: usize,
-    found: Vec<Environment>,
+    found: usize,
     scope: Environment,
 }
 
@@ -237,15 +257,15 @@ impl<'a> Walk<'a> {
             limit,
             budget,
             tried: 0,
-            found: Vec::new(),
+            found: 0,
             scope: Environment::new(),
         }
     }
 
-    fn run(&mut self, level: usize) -> Result<(), WalkStop> {
+    fn run(&mut self, level: usize, visit: &mut dyn FnMut(&Environment)) -> Result<(), WalkStop> {
         let claim = self.claim;
         let Some(sweep) = claim.sweeps.get(level) else {
-            return self.arrive();
+            return self.arrive(visit);
         };
         let start = index_value(&sweep.start, &self.scope)?;
         let end = match (&sweep.end, self.through) {
@@ -270,9 +290,10 @@ impl<'a> Walk<'a> {
         if self.tried > self.budget {
             return Err(WalkStop::TooMany(sweep.span));
         }
+        let (slot, _) = self.scope.insert_full(sweep.variable.clone(), start);
         for value in start..=end {
-            self.scope.insert(sweep.variable.clone(), value);
-            self.run(level + 1)?;
+            self.scope[slot] = value;
+            self.run(level + 1, visit)?;
         }
         self.scope.shift_remove(&sweep.variable);
         Ok(())
@@ -292,7 +313,7 @@ impl<'a> Walk<'a> {
         through.saturating_sub(so_far).saturating_sub(later)
     }
 
-    fn arrive(&mut self) -> Result<(), WalkStop> {
+    fn arrive(&mut self, visit: &mut dyn FnMut(&Environment)) -> Result<(), WalkStop> {
         if let Some(through) = self.through {
             let sum: i128 = self.scope.values().map(|v| i128::from(*v)).sum();
             if sum > i128::from(through) {
@@ -304,22 +325,11 @@ impl<'a> Walk<'a> {
                 return Ok(());
             }
         }
-        if self.found.len() == self.limit {
+        if self.found == self.limit {
             return Err(WalkStop::TooMany(self.claim.sweep_span()));
         }
-        self.found.push(self.scope.clone());
+        self.found += 1;
+        visit(&self.scope);
         Ok(())
-    }
-
-    fn finish(self) -> Result<Vec<Environment>, Diagnostic> {
-        if self.found.is_empty() {
-            return Err(Diagnostic::new(
-                format!("the sweep of claim `{}` is empty", self.claim.name),
-                self.claim.sweep_span(),
-            )
-            .label("no values of the indices are left")
-            .help("let every range end at or after its start, and check the conditions"));
-        }
-        Ok(self.found)
     }
 }

@@ -57,11 +57,6 @@ impl Collector {
         self.found.is_empty()
     }
 
-    /// How many mistakes are noted.
-    pub(crate) fn count(&self) -> usize {
-        self.found.len() + self.left_out
-    }
-
     /// Takes over the mistakes of another collector, as absences.
     pub(crate) fn append_absences(&mut self, other: Collector) {
         for found in other.found {

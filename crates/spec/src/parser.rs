@@ -11,6 +11,9 @@ use crate::terms::TermsItem;
 /// The deepest nesting of brackets, calls, signs and exponents.
 const MAX_NESTING: usize = 200;
 
+/// The longest list of ranges and conditions, in tokens.
+const MAX_CLAUSE_TOKENS: usize = 500;
+
 /// The most indices of a family.
 const MAX_INDICES: usize = 16;
 
@@ -312,15 +315,15 @@ impl<'a> Parser<'a> {
 
     /// A chain of summands.
     fn sum(&mut self) -> Parsed<Tree> {
-        let mut summands = vec![(Sign::Plus, self.binary(PRODUCT)?)];
+        let mut summands = vec![(Sign::Plus, Some(self.binary(PRODUCT)?))];
         loop {
             let sign = match self.sign() {
                 Some("+") => Sign::Plus,
                 Some("-") => Sign::Minus,
-                _ => return balanced(summands),
+                _ => return balanced(&mut summands),
             };
             self.advance();
-            summands.push((sign, self.binary(PRODUCT)?));
+            summands.push((sign, Some(self.binary(PRODUCT)?)));
         }
     }
 
@@ -623,6 +626,11 @@ impl<'a> Parser<'a> {
 
     /// Ranges and conditions, separated by commas, up to the end of the text.
     fn clauses(&mut self) -> Parsed<(Vec<Sweep>, Vec<Condition>)> {
+        if self.tokens.len() - self.at > MAX_CLAUSE_TOKENS {
+            return Err(self
+                .error_here("these ranges and conditions are too long")
+                .help("they are evaluated at every step of a sweep: simplify them"));
+        }
         let (mut sweeps, mut conditions) = (Vec::new(), Vec::new());
         loop {
             let start = self.token().start;
@@ -743,29 +751,38 @@ enum Sign {
 ///
 /// Short chains lean to the left. Long ones are cut at the `+` nearest to the middle, which changes neither the
 /// value nor the text, `a - b + (c - d) = a - b + c - d`, so that sums of thousands of terms make shallow trees.
-fn balanced(mut summands: Vec<(Sign, Tree)>) -> Parsed<Tree> {
+fn balanced(summands: &mut [(Sign, Option<Tree>)]) -> Parsed<Tree> {
     const SHORT: usize = 16;
-    let length = summands.len();
-    let cut = (length > SHORT)
-        .then(|| {
-            (1..length)
-                .filter(|i| summands[*i].0 == Sign::Plus)
-                .min_by_key(|i| i.abs_diff(length / 2))
-        })
-        .flatten();
-    if let Some(cut) = cut {
-        let right = balanced(summands.split_off(cut))?;
-        let left = balanced(summands)?;
-        return joined(Sign::Plus, left, right);
+    if summands.len() > SHORT
+        && let Some(cut) = middle_plus(summands)
+    {
+        let (left, right) = summands.split_at_mut(cut);
+        return joined(Sign::Plus, balanced(left)?, balanced(right)?);
     }
-    let mut summands = summands.into_iter();
-    let Some((_, mut left)) = summands.next() else {
+    let mut trees = summands
+        .iter_mut()
+        .filter_map(|(sign, tree)| Some((*sign, tree.take()?)));
+    // A chain has at least one summand, and each is taken once.
+    let Some((_, mut left)) = trees.next() else {
         return Err(Diagnostic::new("expected an expression", Span::default()));
     };
-    for (sign, right) in summands {
+    for (sign, right) in trees {
         left = joined(sign, left, right)?;
     }
     Ok(left)
+}
+
+/// The `+` nearest to the middle, other than the sign of the first summand.
+fn middle_plus(summands: &[(Sign, Option<Tree>)]) -> Option<usize> {
+    let middle = summands.len() / 2;
+    let plus = |i: &usize| summands[*i].0 == Sign::Plus;
+    let before = (1..=middle).rev().find(plus);
+    let after = (middle + 1..summands.len()).find(plus);
+    match (before, after) {
+        (Some(before), Some(after)) if after - middle < middle - before => Some(after),
+        (Some(before), _) => Some(before),
+        (None, after) => after,
+    }
 }
 
 fn joined(sign: Sign, left: Tree, right: Tree) -> Parsed<Tree> {

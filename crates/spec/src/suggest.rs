@@ -3,17 +3,20 @@
 /// The candidate nearest to `name`, if it is near enough to be a slip of the pen.
 ///
 /// Near means an edit distance (with transpositions) of at most a third of the longer name, and at least 1;
-/// names that differ in case alone are always near. Long names get no suggestion.
+/// names that differ in case alone are always near. Long names get no suggestion, and of very many candidates
+/// only the first are looked at.
 pub fn did_you_mean<'a>(
     name: &str,
     candidates: impl IntoIterator<Item = &'a str>,
 ) -> Option<String> {
     const LONGEST: usize = 64;
+    const MOST: usize = 2000;
     if name.len() > LONGEST {
         return None;
     }
     candidates
         .into_iter()
+        .take(MOST)
         .filter(|candidate| candidate.len() <= LONGEST && *candidate != name)
         .filter_map(|candidate| {
             let length = name.chars().count().max(candidate.chars().count());

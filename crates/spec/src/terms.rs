@@ -1,6 +1,6 @@
 //! Lists of terms, `ratio(F,n) for n = 1..j+1`.
 
-use crate::expression::{Condition, Expr, Sweep};
+use crate::expression::{Condition, Expr, ExprKind, Sweep};
 use crate::index::{
     Environment, MAX_INSTANCES, condition_holds, describe, index_value, substitute,
 };
@@ -102,6 +102,25 @@ impl Terms {
         Ok(Some(count))
     }
 
+    /// Does this name occur anywhere in the list?
+    pub(crate) fn mentions(&self, name: &str) -> bool {
+        fn occurs(expr: &Expr, name: &str) -> bool {
+            matches!(&expr.kind, ExprKind::Name { base, .. } if base == name)
+                || expr.parts().into_iter().any(|part| occurs(part, name))
+        }
+        self.items.iter().any(|item| {
+            let bounds = item
+                .sweeps
+                .iter()
+                .flat_map(|sweep| [&sweep.start].into_iter().chain(&sweep.end));
+            let operands = item.conditions.iter().flat_map(|c| &c.operands);
+            bounds
+                .chain(operands)
+                .chain([&item.body])
+                .any(|expr| occurs(expr, name))
+        })
+    }
+
     fn not_empty(&self, count: usize, env: &Environment) -> Result<(), Diagnostic> {
         if count > 0 {
             return Ok(());
@@ -145,6 +164,13 @@ impl Walk {
         visit: &mut dyn FnMut(&Environment) -> Result<(), Diagnostic>,
     ) -> Result<bool, Diagnostic> {
         let Some(sweep) = item.sweeps.get(level) else {
+            // With sweeps, this step was counted with its range.
+            if level == 0 {
+                self.tried = self.tried.saturating_add(1);
+                if self.tried > self.budget {
+                    return Ok(false);
+                }
+            }
             for condition in &item.conditions {
                 if !condition_holds(condition, &self.scope)? {
                     return Ok(true);
@@ -171,8 +197,9 @@ impl Walk {
         if self.tried > self.budget {
             return Ok(false);
         }
+        let (slot, _) = self.scope.insert_full(sweep.variable.clone(), start);
         for value in start..=end {
-            self.scope.insert(sweep.variable.clone(), value);
+            self.scope[slot] = value;
             if !self.run(item, level + 1, visit)? {
                 return Ok(false);
             }

@@ -3,6 +3,8 @@
 //! A file in `tests/bad` begins with lines `# expect LINE:COLUMN FRAGMENT`, one for each diagnostic, in the order
 //! of their places (`PATH:LINE:COLUMN` in an included file). There must be no others, and each must offer help.
 
+#![allow(clippy::disallowed_methods, reason = "tests read files")]
+
 use linform_spec::{Failure, parse};
 use std::path::Path;
 

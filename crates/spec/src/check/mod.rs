@@ -90,10 +90,8 @@ pub(crate) fn finish(draft: Draft, sources: Vec<SourceFile>) -> Model {
 
 fn check_rule(names: &Names, rule: &Rule, errors: &mut Collector) {
     let mut scope = Scope::new(names, Where::Ring);
-    for (pattern, span) in rule.pattern.iter().zip(&rule.pattern_spans) {
-        if let Pattern::Variable(name) = pattern {
-            scope.bind(name, *span, errors);
-        }
+    for (name, span) in variables(rule) {
+        scope.bind(name, span, errors);
     }
     for condition in &rule.conditions {
         scope.condition(condition, errors);
@@ -126,28 +124,52 @@ fn check_family(names: &Names, family: &DraftFamily, errors: &mut Collector) {
             )),
         );
     }
-    let noted = errors.count();
+    let Some(first) = primitive.next() else {
+        return;
+    };
+    // The list is checked once, for the first rule; the others must bind the variables that occur in it.
+    let mut scope = Scope::new(names, Where::Ring);
+    for (name, span) in variables(first) {
+        scope.indices.push((name.to_owned(), span));
+    }
+    check_terms(&mut scope, terms, errors);
+    let used: Vec<(&str, Span)> = variables(first)
+        .filter(|(name, _)| terms.mentions(name))
+        .collect();
     for rule in primitive {
-        let mut scope = Scope::new(names, Where::Ring);
-        // A clash of the variables was noted at the rule itself.
-        for pattern in &rule.pattern {
-            if let Pattern::Variable(name) = pattern {
-                scope.indices.push((name.clone(), rule.span));
+        for (name, _) in &used {
+            if !variables(rule).any(|(other, _)| other == *name) {
+                errors.push(
+                    Diagnostic::new(
+                        format!("the primitive terms use `{name}`, which this rule does not bind"),
+                        rule.span,
+                    )
+                    .also(terms.span, "the terms")
+                    .help("name the indices of all rules for derivatives in the same way"),
+                );
             }
-        }
-        check_terms(&mut scope, terms, errors);
-        for sweep in terms.items.iter().flat_map(|item| &item.sweeps) {
-            if sweep.end.is_none() {
-                errors.push(Diagnostic::new("this range has no end", sweep.span).help(
-                    "where a primitive is sought must be finite: write the end, as in `1..j+1`",
-                ));
-            }
-        }
-        if errors.count() > noted {
-            // The same mistake would be told once for each rule.
-            return;
         }
     }
+    for sweep in terms.items.iter().flat_map(|item| &item.sweeps) {
+        if sweep.end.is_none() {
+            errors.push(
+                Diagnostic::new("this range has no end", sweep.span).help(
+                    "where a primitive is sought must be finite: write the end, as in `1..j+1`",
+                ),
+            );
+        }
+    }
+}
+
+/// The variables on the left of a rule.
+fn variables(rule: &Rule) -> impl Iterator<Item = (&str, Span)> {
+    rule.pattern
+        .iter()
+        .zip(&rule.pattern_spans)
+        .filter_map(|(pattern, span)| match pattern {
+            Pattern::Variable(name) => Some((name.as_str(), *span)),
+            Pattern::Fixed(_) => None,
+        })
 }
 
 /// Checks a list of terms; the scope is left as it was.

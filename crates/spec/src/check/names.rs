@@ -5,6 +5,7 @@ use crate::model::split_primes;
 use crate::read::{Declared, Draft, count_indices, shorten};
 use crate::source::{Diagnostic, Span};
 use crate::suggest::did_you_mean;
+use indexmap::IndexMap;
 use std::collections::HashMap;
 
 /// Every declared name.
@@ -14,10 +15,10 @@ pub(crate) struct Names {
     symbols: HashMap<String, (Vec<u32>, Span)>,
     /// The symbols as they are declared, for suggestions.
     symbol_list: Vec<String>,
-    laws: HashMap<String, Span>,
+    laws: IndexMap<String, Span>,
     /// With the number of indices, where it is known.
-    families: HashMap<String, (Option<usize>, Span)>,
-    models: HashMap<String, Span>,
+    families: IndexMap<String, (Option<usize>, Span)>,
+    models: IndexMap<String, Span>,
     variable: Option<String>,
     constants: Vec<String>,
     /// May an unknown name be known after all, its declaration being lost?
@@ -151,7 +152,7 @@ impl Names {
 
     /// Notes that a law, family or model is not known.
     pub(crate) fn unknown(&self, kind: Kind, name: &str, span: Span, errors: &mut Collector) {
-        if self.incomplete {
+        if self.incomplete || errors.is_full() {
             return;
         }
         let known: Vec<&str> = match kind {
@@ -175,15 +176,13 @@ impl Names {
         word: &str,
         name: &str,
         span: Span,
-        mut candidates: Vec<&str>,
+        candidates: Vec<&str>,
         help: &str,
         errors: &mut Collector,
     ) {
         if self.incomplete || errors.is_full() {
             return;
         }
-        // Hash maps have no order of their own, and messages must not change from run to run.
-        candidates.sort_unstable();
         let help = match did_you_mean(name, candidates) {
             Some(near) => format!("did you mean `{near}`?"),
             None => help.to_owned(),

@@ -9,6 +9,9 @@ use crate::family::{Family, Known, Rule};
 use crate::parser;
 use crate::source::Diagnostic;
 
+/// The most rules of a family.
+const MAX_RULES: usize = 1000;
+
 pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector) {
     let name = declared_key(entry, errors);
     let Some(section) = entry.section(format!("[family.{}]", shorten(entry.key)), errors) else {
@@ -49,7 +52,16 @@ pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector)
                 .help("write at least one, such as `\"a[0] = q\"`"),
             );
         }
-        for text in &texts {
+        if texts.len() > MAX_RULES {
+            errors.push(
+                Diagnostic::new(
+                    format!("{} rules in one family", texts.len()),
+                    rules_entry.value_span(),
+                )
+                .help(format!("a family has at most {MAX_RULES} rules")),
+            );
+        }
+        for text in texts.iter().take(MAX_RULES) {
             let Some((left, rule)) = errors.take(parser::rule(&text.value, &text.place)) else {
                 continue;
             };

@@ -8,7 +8,7 @@ use crate::source::{Diagnostic, SourceFile, Span};
 use toml::de::{DeTable, Error};
 
 /// The largest file, in bytes.
-const MAX_FILE: usize = 4 << 20;
+const MAX_FILE: usize = 2 << 20;
 
 /// The most files of one spec.
 const MAX_FILES: usize = 64;

@@ -62,6 +62,9 @@ fn read_file(file: File<'_>, table: &DeTable<'_>, draft: &mut Draft, errors: &mu
     // The claims of an included file are its own business.
     if main && let Some(entry) = top.get("claim") {
         for section in entry.sections("[[claim]]", errors) {
+            if errors.is_full() {
+                break;
+            }
             claims::read(&section, draft, errors);
         }
     }
@@ -76,6 +79,9 @@ fn for_each(
 ) {
     if let Some(section) = top.section(kind, format!("[{kind}]"), errors) {
         for entry in section.entries() {
+            if errors.is_full() {
+                break;
+            }
             read(entry, errors);
         }
     }

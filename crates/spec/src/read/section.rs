@@ -120,7 +120,7 @@ impl<'a> Section<'a> {
         errors: &mut Collector,
     ) -> Option<&Entry<'a>> {
         let entry = self.get(key);
-        if entry.is_none() {
+        if entry.is_none() && !errors.is_full() {
             errors.push_absence(
                 Diagnostic::new(format!("{} has no `{key}`", self.name), self.span)
                     .help(format!("add `{example}`")),
