@@ -9,10 +9,12 @@ mod latex;
 #[cfg(test)]
 mod samples;
 mod sanitise;
+mod script;
 mod text;
 mod words;
 
 pub use crate::csv::csv;
 pub use json::{Digest, LARGEST_FILE, Read, ReadError, json, read_json};
 pub use latex::latex;
+pub use script::{ScriptError, gp, sympy};
 pub use text::{TextOptions, text};

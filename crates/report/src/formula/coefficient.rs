@@ -114,6 +114,7 @@ pub(crate) fn value_and_monomial(
         (_, true) => number(style, value),
         (false, false) => match style {
             Style::Ascii => format!("{value}*{monomial}"),
+            Style::Unicode if !letters(names) => format!("{value}·{monomial}"),
             Style::Unicode if value.is_integer() => format!("{value}{monomial}"),
             Style::Unicode => format!("{value} {monomial}"),
             Style::Latex => format!("{}\\,{monomial}", number(style, value)),
@@ -152,8 +153,11 @@ fn monomial(style: Style, exponents: &[u32], names: &[String]) -> String {
         })
         .collect();
     // Side by side where each name is one letter.
-    let letters = names
+    factors.join(style.pick("*", if letters(names) { "" } else { "·" }, "\\,"))
+}
+
+fn letters(names: &[String]) -> bool {
+    names
         .iter()
-        .all(|symbol| split_primes(symbol).0.chars().nth(1).is_none());
-    factors.join(style.pick("*", if letters { "" } else { "·" }, "\\,"))
+        .all(|symbol| split_primes(symbol).0.chars().nth(1).is_none())
 }

@@ -46,8 +46,18 @@ impl Written {
     }
 }
 
+/// The words that stand before the derivative of a target known by its derivative alone.
+const PRIMITIVE: &str = "primitive of ";
+
 /// The formula of a text from a spec or a result file; a text that is no expression is shown as it is.
 pub(crate) fn expression(style: Style, text: &str) -> Written {
+    if let Some(derivative) = text.strip_prefix(PRIMITIVE)
+        && let Ok(derivative) = parse_expression(derivative)
+    {
+        let words = style.pick(PRIMITIVE, PRIMITIVE, "\\text{primitive of }");
+        let derivative = write(style, &derivative).at(style, Level::Product);
+        return Written::new(format!("{words}{derivative}"), Level::Product);
+    }
     match (parse_expression(text), style) {
         (Ok(expr), _) => write(style, &expr),
         (Err(_), Style::Latex) => Written::new(
@@ -129,6 +139,9 @@ fn write(style: Style, expr: &Expr) -> Written {
             arguments,
             primes: order,
         } => {
+            if *function == Function::D && style != Style::Ascii {
+                return derived(style, expr, 0);
+            }
             let call = call(style, *function, arguments);
             match order {
                 0 => call,
@@ -176,6 +189,34 @@ fn write(style: Style, expr: &Expr) -> Written {
     }
 }
 
+/// The derivative of this order of an expression, with nested derivatives counted together.
+fn derived(style: Style, expr: &Expr, order: u32) -> Written {
+    match &expr.kind {
+        ExprKind::Group(inner) => derived(style, inner, order),
+        ExprKind::Call {
+            function: Function::D,
+            arguments,
+            primes: more,
+        } if arguments.len() == 1 => derived(
+            style,
+            &arguments[0],
+            order.saturating_add(*more).saturating_add(1),
+        ),
+        ExprKind::Name { base, primes: own } => {
+            with_primes(style, &name(style, base), order.saturating_add(*own))
+        }
+        _ => {
+            let inner = write(style, expr);
+            let whole = match &expr.kind {
+                ExprKind::Element { primes: 0, .. } => inner.text,
+                _ if style == Style::Latex => format!("\\bigl({}\\bigr)", inner.text),
+                _ => format!("({})", inner.text),
+            };
+            with_primes(style, &whole, order)
+        }
+    }
+}
+
 fn with_primes(style: Style, base: &str, order: u32) -> Written {
     let level = if power_may_follow(style, order) {
         Level::Atom
@@ -205,7 +246,7 @@ fn bounds(style: Style, expr: &Expr) -> (String, String) {
 
 /// What stands between two factors.
 fn times(style: Style, left: &Expr, right: &Expr) -> &'static str {
-    let number = matches!(left.kind, ExprKind::Number(_)) && starts_with_letter(right);
+    let number = matches!(left.kind, ExprKind::Number(_)) && is_letter_power(right);
     match style {
         Style::Ascii => "*",
         Style::Unicode if number || is_letter_power(left) && is_letter_power(right) => "",
@@ -255,13 +296,6 @@ fn call(style: Style, function: Function, arguments: &[Expr]) -> Written {
         (Function::Derivative, [law, order]) if small(order).is_some() => {
             derivative(law, small(order).unwrap_or_default())
         }
-        (Function::D, [argument]) if style != Style::Ascii => Written::new(
-            match style {
-                Style::Latex => format!("\\bigl({}\\bigr)'", write(style, argument).text),
-                _ => format!("({})′", write(style, argument).text),
-            },
-            Level::Atom,
-        ),
         (Function::Minor, [family, rows, columns]) if style != Style::Ascii => {
             let (family, rows, columns) = (
                 write(style, family).text,
@@ -376,6 +410,21 @@ mod tests {
                 "\\bigl(q^{(5)}\\bigr)^{2}",
             ),
             ("1", "1", "1", "1"),
+            ("D(D(A*B))", "D(D(A*B))", "(AB)″", "\\bigl(A\\,B\\bigr)''"),
+            ("D(D(P')')", "D(D(P')')", "P⁗", "P^{(4)}"),
+            ("D(u[1,0])", "D(u[1,0])", "u[1,0]′", "u_{1,0}'"),
+            (
+                "2*alpha*g2^2",
+                "2*alpha*g2^2",
+                "2·alpha·g2²",
+                "2\\,\\alpha\\,g_{2}^{2}",
+            ),
+            (
+                "primitive of x*A^2 + 1",
+                "primitive of (x*A^2 + 1)",
+                "primitive of (xA² + 1)",
+                "\\text{primitive of }\\bigl(x\\,A^{2} + 1\\bigr)",
+            ),
         ] {
             assert_eq!(expression(Style::Ascii, text).text, ascii);
             assert_eq!(expression(Style::Unicode, text).text, unicode);

@@ -8,7 +8,7 @@ pub(crate) fn escape(text: &str) -> String {
     let mut last = ' ';
     for c in text.chars() {
         // Kept apart where two of them would form a ligature.
-        let joins = |c: char| "`'-<>,\"?!".contains(c);
+        let joins = |c: char| "`'-,?!\"".contains(c);
         if joins(c) && joins(last) {
             out.push_str("{}");
         }
@@ -21,10 +21,12 @@ pub(crate) fn escape(text: &str) -> String {
             }
             '^' => out.push_str("\\textasciicircum{}"),
             '~' => out.push_str("\\textasciitilde{}"),
+            '<' | '>' | '|' => out.push_str(&format!("\\ensuremath{{{c}}}")),
+            '"' => out.push_str("''"),
             '\n' | '\r' | '\t' | '\u{a0}' => out.push(' '),
             ' '..='~' => out.push(c),
             '′' => out.push_str("\\ensuremath{'}"),
-            'À'..='ſ' if c.is_alphabetic() => out.push(c),
+            'À'..='ſ' if c.is_alphabetic() && !WITHOUT_GLYPH.contains(c) => out.push(c),
             _ => match symbol(c) {
                 Some(command) => out.push_str(&format!("\\ensuremath{{{command}}}")),
                 None => out.push_str(&format!("[U+{:04X}]", u32::from(c))),
@@ -33,6 +35,9 @@ pub(crate) fn escape(text: &str) -> String {
     }
     out
 }
+
+/// Latin letters that LaTeX's standard encoding does not have.
+const WITHOUT_GLYPH: &str = "ÐÞðþĄąĐđĘęĦħĮįĸĿŀŉŊŋŦŧŲųſ";
 
 /// The command for a letter that mathematics uses.
 pub(crate) fn symbol(c: char) -> Option<&'static str> {

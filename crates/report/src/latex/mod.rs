@@ -11,7 +11,6 @@ const STYLE: Style = Style::Latex;
 
 const PREAMBLE: &str = "\\documentclass[a4paper,11pt]{article}
 \\usepackage[utf8]{inputenc}
-\\usepackage[T1]{fontenc}
 \\usepackage{amsmath,amssymb}
 \\setlength{\\parindent}{0pt}
 \\setlength{\\parskip}{4pt}
