@@ -55,12 +55,12 @@ fn a_changed_coefficient_of_a_form_is_rejected() {
             let Finding::Holds { form } = &record.claims[position].finding else {
                 continue;
             };
-            for term in 0..form.len() {
+            for (term, original) in form.iter().enumerate() {
                 let mut changed = record.clone();
                 if let Finding::Holds { form } = &mut changed.claims[position].finding {
                     change(&mut form[term].coefficient);
                 }
-                assert_rejected(&changed, position, &form[term].term);
+                assert_rejected(&changed, position, &original.term);
                 changes += 1;
             }
         }
@@ -79,14 +79,14 @@ fn a_changed_certificate_is_rejected() {
             else {
                 continue;
             };
-            for row in 0..rows.len() {
+            for (row, original) in rows.iter().enumerate() {
                 let mut changed = record.clone();
                 if let Finding::Refuted(Refutation::Contradiction { rows, .. }) =
                     &mut changed.claims[position].finding
                 {
                     change(&mut rows[row].multiplier);
                 }
-                assert_rejected(&changed, position, &rows[row].monomial);
+                assert_rejected(&changed, position, &original.monomial);
                 changes += 1;
             }
         }

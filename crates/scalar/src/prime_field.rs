@@ -19,7 +19,7 @@ pub struct PrimeField {
 impl PrimeField {
     /// The field with `prime` elements, or nothing unless `prime` is an odd prime below `2^62`.
     pub fn new(prime: u64) -> Option<PrimeField> {
-        if prime < 3 || prime >= 1 << 62 || !is_prime(prime) {
+        if !(3..1 << 62).contains(&prime) || !is_prime(prime) {
             return None;
         }
         // Newton's iteration doubles the number of correct bits; p·p ≡ 1 (mod 8) starts it with three.
@@ -142,7 +142,7 @@ fn is_prime(n: u64) -> bool {
         return false;
     }
     for base in BASES {
-        if n % base == 0 {
+        if n.is_multiple_of(base) {
             return n == base;
         }
     }
