@@ -1,7 +1,7 @@
 //! From the square system to the outcome.
 
 use crate::profile::{Profile, profile};
-use crate::residual::vanishes;
+use crate::residual::Vector;
 use crate::square::{Quotients, Square};
 use crate::{Fraction, Independence, Method, Outcome, Solved, System};
 use crate::{bareiss, certificate, modular, verify};
@@ -174,19 +174,16 @@ fn holds_outside(
     with_right: bool,
     control: &dyn Control,
 ) -> Result<bool, Stop> {
-    let opposite = -&candidate.denominator;
-    let mut products: Vec<(&Polynomial, &Polynomial)> = Vec::new();
+    let mut polynomials = candidate.numerators.clone();
+    polynomials.push(-&candidate.denominator);
+    let mut vector = Vector::new(&polynomials, &system.degrees());
     for (index, row) in system.rows().iter().enumerate() {
         if profile.rows.binary_search(&index).is_ok() {
             continue;
         }
-        products.clear();
-        let entries = row.entries.iter();
-        products.extend(entries.map(|(column, entry)| (entry, &candidate.numerators[*column])));
-        if with_right {
-            products.push((&row.right, &opposite));
-        }
-        if !vanishes(&products, control)? {
+        let entries = row.entries.iter().map(|(column, entry)| (*column, entry));
+        let right = with_right.then_some((system.columns(), &row.right));
+        if !vector.is_orthogonal_to(entries.chain(right), control)? {
             return Ok(false);
         }
     }

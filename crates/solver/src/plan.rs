@@ -1,6 +1,6 @@
 //! Evaluation of many polynomials at one point after another.
 
-use linform_ring::Polynomial;
+use linform_ring::{Monomial, Polynomial};
 use linform_scalar::{Integer, PrimeField};
 
 /// The terms of a list of polynomials, arranged for substituting numbers for their variables one by one.
@@ -28,24 +28,38 @@ impl<'a> Plan<'a> {
     /// The plan for integral polynomials, none of them 0.
     pub(crate) fn new(polynomials: &[&'a Polynomial]) -> Plan<'a> {
         let symbols = occurring(polynomials);
-        let mut terms: Vec<(usize, Vec<u16>, &'a Integer)> = Vec::new();
-        for (index, polynomial) in polynomials.iter().enumerate() {
+        let variables = symbols.len();
+        let count = polynomials.iter().map(|p| p.len()).sum();
+        let mut coefficients: Vec<&'a Integer> = Vec::with_capacity(count);
+        // The exponents of all terms, `variables` numbers for each, and the polynomial that it belongs to.
+        let mut exponents: Vec<u16> = Vec::with_capacity(count * variables);
+        let mut owners: Vec<u32> = Vec::with_capacity(count);
+        let mut terms: Vec<(&'a Monomial, &'a Integer)> = Vec::new();
+        let in_order = symbols.is_sorted();
+        for (owner, polynomial) in polynomials.iter().enumerate() {
             debug_assert!(!polynomial.is_zero() && polynomial.denominator().is_one());
-            for (monomial, coefficient) in polynomial.iter() {
-                let exponents = symbols.iter().map(|&s| monomial.exponent(s)).collect();
-                terms.push((index, exponents, coefficient));
+            terms.clear();
+            terms.extend(polynomial.iter().rev());
+            if !in_order {
+                let key = |monomial: &'a Monomial| symbols.iter().map(|&s| monomial.exponent(s));
+                terms.sort_by(|a, b| key(a.0).cmp(key(b.0)));
+            }
+            for &(monomial, coefficient) in &terms {
+                exponents.extend(symbols.iter().map(|&s| monomial.exponent(s)));
+                owners.push(owner as u32);
+                coefficients.push(coefficient);
             }
         }
-        terms.sort_by(|a, b| (a.0, &a.1).cmp(&(b.0, &b.1)));
-        let mut levels = Vec::with_capacity(symbols.len());
+        let mut levels = Vec::with_capacity(variables);
         // The terms that are left when all variables from `k + 1` on are numbers.
-        let mut left: Vec<usize> = (0..terms.len()).collect();
-        for k in (0..symbols.len()).rev() {
+        let mut left: Vec<usize> = (0..count).collect();
+        for k in (0..variables).rev() {
+            let head_of = |term: usize| &exponents[term * variables..][..k];
             let mut starts = Vec::new();
             let mut heads: Vec<usize> = Vec::new();
             for (place, &term) in left.iter().enumerate() {
                 let joins = heads.last().is_some_and(|&head| {
-                    terms[head].0 == terms[term].0 && terms[head].1[..k] == terms[term].1[..k]
+                    owners[head] == owners[term] && head_of(head) == head_of(term)
                 });
                 if !joins {
                     heads.push(term);
@@ -53,10 +67,13 @@ impl<'a> Plan<'a> {
                 }
             }
             starts.push(left.len() as u32);
-            let exponents: Vec<u16> = left.iter().map(|&term| terms[term].1[k]).collect();
-            let degree = exponents.iter().copied().max().unwrap_or(0);
+            let own: Vec<u16> = left
+                .iter()
+                .map(|&term| exponents[term * variables + k])
+                .collect();
+            let degree = own.iter().copied().max().unwrap_or(0);
             levels.push(Level {
-                exponents,
+                exponents: own,
                 starts,
                 degree,
             });
@@ -65,7 +82,7 @@ impl<'a> Plan<'a> {
         levels.reverse();
         Plan {
             symbols,
-            coefficients: terms.into_iter().map(|(_, _, c)| c).collect(),
+            coefficients,
             levels,
         }
     }
@@ -104,9 +121,7 @@ impl<'a> Plan<'a> {
 fn occurring(polynomials: &[&Polynomial]) -> Vec<usize> {
     let degrees = polynomials
         .iter()
-        .fold(linform_ring::Monomial::one(), |all, p| {
-            all.lcm(&p.degrees())
-        });
+        .fold(Monomial::one(), |all, p| all.lcm(&p.degrees()));
     let mut symbols: Vec<usize> = (0..degrees.width())
         .filter(|&symbol| degrees.exponent(symbol) > 0)
         .collect();

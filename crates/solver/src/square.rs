@@ -1,8 +1,9 @@
 //! Square systems with several right sides.
 
 use crate::profile::{Contradiction, Profile};
+use crate::residual::Vector;
 use crate::{Fraction, System};
-use linform_ring::Polynomial;
+use linform_ring::{Monomial, Polynomial};
 use linform_scalar::{Control, Integer, Rational, Stop};
 
 /// A system `S·X = B` with a matrix that is not singular.
@@ -71,17 +72,23 @@ impl<'a> Square<'a> {
         candidate: &Quotients,
         control: &dyn Control,
     ) -> Result<bool, Stop> {
-        let mut rows: Vec<Vec<(&Polynomial, &Polynomial)>> = vec![Vec::new(); self.size];
-        let opposite = -&candidate.denominator;
+        let mut polynomials = candidate.numerators.clone();
+        polynomials.push(-&candidate.denominator);
+        let degrees = self
+            .entries
+            .iter()
+            .fold(Monomial::one(), |all, (_, _, p)| all.lcm(&p.degrees()));
+        let mut vector = Vector::new(&polynomials, &degrees);
+        let mut rows: Vec<Vec<(usize, &Polynomial)>> = vec![Vec::new(); self.size];
         for &(i, j, entry) in &self.entries {
             if j < self.size {
-                rows[i].push((entry, &candidate.numerators[j]));
+                rows[i].push((j, entry));
             } else if j == self.size + right {
-                rows[i].push((entry, &opposite));
+                rows[i].push((self.size, entry));
             }
         }
-        for products in &rows {
-            if !crate::residual::vanishes(products, control)? {
+        for row in rows {
+            if !vector.is_orthogonal_to(row.into_iter(), control)? {
                 return Ok(false);
             }
         }

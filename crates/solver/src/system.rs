@@ -1,6 +1,6 @@
 //! Systems of linear equations.
 
-use linform_ring::Polynomial;
+use linform_ring::{Monomial, Polynomial};
 use linform_scalar::{Integer, Rational};
 
 /// One equation `Σ entry_j · x_j = right`.
@@ -78,6 +78,13 @@ impl System {
         self.columns
     }
 
+    /// The degree of all entries in every symbol, as a monomial.
+    pub(crate) fn degrees(&self) -> Monomial {
+        self.rows
+            .iter()
+            .fold(Monomial::one(), |all, row| all.lcm(&row.degrees()))
+    }
+
     /// The equations.
     pub fn rows(&self) -> &[Row] {
         &self.rows
@@ -91,6 +98,15 @@ impl Row {
             .entries
             .binary_search_by_key(&column, |(column, _)| *column);
         place.ok().map(|index| &self.entries[index].1)
+    }
+
+    /// The least common multiple of all monomials of the entries and the right side.
+    pub(crate) fn degrees(&self) -> Monomial {
+        self.entries
+            .iter()
+            .map(|(_, entry)| entry)
+            .chain([&self.right])
+            .fold(Monomial::one(), |all, p| all.lcm(&p.degrees()))
     }
 
     /// The number of terms of all entries and the right side.

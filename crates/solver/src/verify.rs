@@ -1,9 +1,9 @@
 //! Verification of outcomes by plain multiplication.
 
-use crate::residual::{sum_of_products, vanishes};
+use crate::residual::{Vector, sum_of_products};
 use crate::{Certificate, Fraction, Outcome, System};
 use linform_ring::Polynomial;
-use linform_scalar::{Control, Stop};
+use linform_scalar::{Control, Integer, Rational, Stop};
 use std::fmt;
 
 /// Where an outcome contradicts its system.
@@ -105,25 +105,20 @@ fn failing_row(
     if solution.len() != system.columns() {
         return Ok(Some(Mismatch::Shape));
     }
-    let (denominator, numerators) = over_common_denominator(solution, control)?;
-    let opposite = -&denominator;
+    let (denominator, mut polynomials) = over_common_denominator(solution, control)?;
+    polynomials.push(-&denominator);
+    let mut vector = Vector::new(&polynomials, &system.degrees());
     for (index, row) in system.rows().iter().enumerate() {
-        let mut products: Vec<(&Polynomial, &Polynomial)> = row
-            .entries
-            .iter()
-            .map(|(column, entry)| (entry, &numerators[*column]))
-            .collect();
-        if with_right {
-            products.push((&row.right, &opposite));
-        }
-        if !vanishes(&products, control)? {
+        let entries = row.entries.iter().map(|(column, entry)| (*column, entry));
+        let right = with_right.then_some((system.columns(), &row.right));
+        if !vector.is_orthogonal_to(entries.chain(right), control)? {
             return Ok(Some(Mismatch::Row(index)));
         }
     }
     Ok(None)
 }
 
-/// A multiple of all denominators, and the numerators over it.
+/// An integral multiple of all denominators, and the numerators over it, integral as well.
 fn over_common_denominator(
     solution: &[Fraction],
     control: &dyn Control,
@@ -145,7 +140,12 @@ fn over_common_denominator(
             None => unreachable!("every denominator divides the common one"),
         });
     }
-    Ok((common, numerators))
+    let numbers = numerators
+        .iter()
+        .fold(Integer::ONE, |lcm, p| lcm.lcm(p.denominator()));
+    let factor = Rational::from(numbers);
+    let numerators = numerators.iter().map(|p| p.scale(&factor)).collect();
+    Ok((common.scale(&factor), numerators))
 }
 
 pub(crate) fn verify_certificate(
@@ -167,7 +167,7 @@ pub(crate) fn verify_certificate(
             .iter()
             .filter_map(|(row, multiplier)| Some((system.rows()[*row].entry(column)?, multiplier)))
             .collect();
-        if !vanishes(&products, control)? {
+        if !sum_of_products(&products, control)?.is_zero() {
             return Ok(Err(Mismatch::Column(column)));
         }
     }
