@@ -102,19 +102,19 @@ fn polynomial(style: Style, polynomial: &PublishedPolynomial, names: &[String]) 
 }
 
 /// A positive number times a monomial: `1/3 t²`, `3t`, `t`, `7/12`.
-pub(crate) fn value_and_monomial(
+fn value_and_monomial(
     style: Style,
     value: &BigRational,
     exponents: &[u32],
     names: &[String],
 ) -> String {
-    let monomial = monomial(style, exponents, names);
+    let (monomial, letters) = monomial(style, exponents, names);
     match (value.is_one(), monomial.is_empty()) {
         (true, false) => monomial,
         (_, true) => number(style, value),
         (false, false) => match style {
             Style::Ascii => format!("{value}*{monomial}"),
-            Style::Unicode if !letters(names) => format!("{value}·{monomial}"),
+            Style::Unicode if !letters => format!("{value}·{monomial}"),
             Style::Unicode if value.is_integer() => format!("{value}{monomial}"),
             Style::Unicode => format!("{value} {monomial}"),
             Style::Latex => format!("{}\\,{monomial}", number(style, value)),
@@ -135,29 +135,26 @@ fn number(style: Style, value: &BigRational) -> String {
     }
 }
 
-fn monomial(style: Style, exponents: &[u32], names: &[String]) -> String {
-    let factors: Vec<String> = exponents
+/// The monomial, and whether all names in it are single letters, which can stand side by side.
+fn monomial(style: Style, exponents: &[u32], names: &[String]) -> (String, bool) {
+    let mut letters = true;
+    let mut factors = Vec::new();
+    for (exponent, symbol) in exponents
         .iter()
         .zip(names)
         .filter(|(exponent, _)| **exponent > 0)
-        .map(|(exponent, symbol)| {
-            let (base, order) = split_primes(symbol);
-            let symbol = format!("{}{}", name(style, base), primes(style, order));
-            match *exponent {
-                1 => symbol,
-                _ if power_may_follow(style, order) => {
-                    format!("{symbol}{}", power(style, &exponent.to_string()))
-                }
-                _ => format!("({symbol}){}", power(style, &exponent.to_string())),
+    {
+        let (base, order) = split_primes(symbol);
+        letters &= base.chars().nth(1).is_none();
+        let symbol = format!("{}{}", name(style, base), primes(style, order));
+        factors.push(match *exponent {
+            1 => symbol,
+            _ if power_may_follow(style, order) => {
+                format!("{symbol}{}", power(style, &exponent.to_string()))
             }
-        })
-        .collect();
-    // Side by side where each name is one letter.
-    factors.join(style.pick("*", if letters(names) { "" } else { "·" }, "\\,"))
-}
-
-fn letters(names: &[String]) -> bool {
-    names
-        .iter()
-        .all(|symbol| split_primes(symbol).0.chars().nth(1).is_none())
+            _ => format!("({symbol}){}", power(style, &exponent.to_string())),
+        });
+    }
+    let product = factors.join(style.pick("*", if letters { "" } else { "·" }, "\\,"));
+    (product, letters)
 }

@@ -39,11 +39,42 @@ impl Written {
         if self.level >= level {
             return self.text.clone();
         }
-        match style {
-            Style::Latex => format!("\\bigl({}\\bigr)", self.text),
-            _ => format!("({})", self.text),
-        }
+        let (open, close) = parentheses(style, &self.text);
+        format!("{open}{}{close}", self.text)
     }
+}
+
+/// Parentheses that suit the height of a formula.
+pub(crate) fn parentheses(style: Style, inner: &str) -> (&'static str, &'static str) {
+    match style {
+        Style::Latex if inner.contains("\\frac") => ("\\Bigl(", "\\Bigr)"),
+        Style::Latex => ("\\bigl(", "\\bigr)"),
+        _ => ("(", ")"),
+    }
+}
+
+/// The summands of a formula, each with its sign except for a first positive one.
+pub(crate) fn summands(style: Style, text: &str) -> Vec<String> {
+    let Ok(expr) = parse_expression(text) else {
+        return vec![expression(style, text).text];
+    };
+    let mut parts = Vec::new();
+    let mut rest = &expr;
+    loop {
+        let (sign, left, right) = match &rest.kind {
+            ExprKind::Add(left, right) => ("+", left, right),
+            ExprKind::Sub(left, right) => (style.minus(), left, right),
+            _ => break,
+        };
+        parts.push(format!(
+            "{sign} {}",
+            write(style, right).at(style, Level::Product)
+        ));
+        rest = left;
+    }
+    parts.push(write(style, rest).text);
+    parts.reverse();
+    parts
 }
 
 /// The words that stand before the derivative of a target known by its derivative alone.
@@ -95,11 +126,20 @@ fn write(style: Style, expr: &Expr) -> Written {
             Level::Sum,
         ),
         ExprKind::Mul(a, b) => {
-            let (left, right) = (at(a, Level::Product), at(b, Level::Power));
-            Written::new(
-                format!("{left}{}{right}", times(style, a, b)),
-                Level::Product,
-            )
+            let level = if has_quotient(a) {
+                Level::Power
+            } else {
+                Level::Product
+            };
+            let (left, right) = (at(a, Level::Product), at(b, level));
+            match (left.as_str(), right.as_str()) {
+                ("1", _) => write(style, b),
+                (_, "1") => write(style, a),
+                _ => Written::new(
+                    format!("{left}{}{right}", times(style, a, b)),
+                    Level::Product,
+                ),
+            }
         }
         ExprKind::Div(a, b) => match style {
             Style::Latex => Written::new(
@@ -209,8 +249,10 @@ fn derived(style: Style, expr: &Expr, order: u32) -> Written {
             let inner = write(style, expr);
             let whole = match &expr.kind {
                 ExprKind::Element { primes: 0, .. } => inner.text,
-                _ if style == Style::Latex => format!("\\bigl({}\\bigr)", inner.text),
-                _ => format!("({})", inner.text),
+                _ => {
+                    let (open, close) = parentheses(style, &inner.text);
+                    format!("{open}{}{close}", inner.text)
+                }
             };
             with_primes(style, &whole, order)
         }
@@ -247,12 +289,30 @@ fn bounds(style: Style, expr: &Expr) -> (String, String) {
 /// What stands between two factors.
 fn times(style: Style, left: &Expr, right: &Expr) -> &'static str {
     let number = matches!(left.kind, ExprKind::Number(_)) && is_letter_power(right);
+    let fraction = matches!(&left.kind, ExprKind::Div(above, below)
+        if matches!((&above.kind, &below.kind), (ExprKind::Number(_), ExprKind::Number(_))));
     match style {
         Style::Ascii => "*",
+        Style::Unicode if fraction && is_letter_power(right) => " ",
         Style::Unicode if number || is_letter_power(left) && is_letter_power(right) => "",
         Style::Unicode => "·",
         Style::Latex if starts_with_letter(right) => "\\,",
         Style::Latex => " \\cdot ",
+    }
+}
+
+/// Is this a product with a quotient of more than numbers? A further quotient beside it is put in parentheses.
+fn has_quotient(expr: &Expr) -> bool {
+    match &expr.kind {
+        ExprKind::Mul(left, right) => has_quotient(left) || has_quotient(right),
+        ExprKind::Div(_, below) => !matches!(below.kind, ExprKind::Number(_)),
+        ExprKind::Call {
+            function: Function::Ratio,
+            arguments,
+            primes: 0,
+        } => arguments.last().and_then(small) != Some(0),
+        ExprKind::Group(inner) | ExprKind::Neg(inner) => has_quotient(inner),
+        _ => false,
     }
 }
 
@@ -371,7 +431,7 @@ mod tests {
                 "ratio(F,7)^2",
                 "(F^(7)/F)^2",
                 "(F⁽⁷⁾/F)²",
-                "\\bigl(\\frac{F^{(7)}}{F}\\bigr)^{2}",
+                "\\Bigl(\\frac{F^{(7)}}{F}\\Bigr)^{2}",
             ),
             ("u[3,0]", "u[3,0]", "u[3,0]", "u_{3,0}"),
             (
@@ -410,6 +470,18 @@ mod tests {
                 "\\bigl(q^{(5)}\\bigr)^{2}",
             ),
             ("1", "1", "1", "1"),
+            (
+                "3/5*t*ratio(F,1)*ratio(G,2)",
+                "3/5*t*F'/F*(G''/G)",
+                "3/5 t·F′/F·(G″/G)",
+                "\\frac{3}{5}\\,t\\,\\frac{F'}{F}\\,\\frac{G''}{G}",
+            ),
+            (
+                "8*ratio(F,0)*ratio(F,1)",
+                "8*F'/F",
+                "8·F′/F",
+                "8\\,\\frac{F'}{F}",
+            ),
             ("D(D(A*B))", "D(D(A*B))", "(AB)″", "\\bigl(A\\,B\\bigr)''"),
             ("D(D(P')')", "D(D(P')')", "P⁗", "P^{(4)}"),
             ("D(u[1,0])", "D(u[1,0])", "u[1,0]′", "u_{1,0}'"),
@@ -430,6 +502,15 @@ mod tests {
             assert_eq!(expression(Style::Unicode, text).text, unicode);
             assert_eq!(expression(Style::Latex, text).text, latex);
         }
+    }
+
+    #[test]
+    fn long_targets_come_apart_at_their_signs() {
+        assert_eq!(
+            summands(Style::Unicode, "-a + (b - c)*d - e"),
+            ["−a", "+ (b − c)·d", "− e"]
+        );
+        assert_eq!(summands(Style::Latex, "%"), ["\\text{\\ttfamily \\%}"]);
     }
 
     #[test]

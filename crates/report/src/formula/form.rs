@@ -2,7 +2,7 @@
 
 use super::Style;
 use super::coefficient::{Signed, signed};
-use super::expression::{Level, expression};
+use super::expression::{Level, expression, parentheses};
 use linform_engine::record::FormTerm;
 
 /// One product of a form, with its sign except for a first positive one. Its parts are the summands of a coefficient that
@@ -50,12 +50,13 @@ pub(crate) fn combination(
     if !particular.is_empty() || kernel.is_empty() {
         products = form(style, particular);
     }
-    let (open, close) = style.pick(("*(", ")"), ("·(", ")"), ("\\,\\bigl(", "\\bigr)"));
+    let dot = style.pick("*", "·", "\\,");
     for (letter, vector) in kernel {
         let mut inner = form(style, vector);
+        let (open, close) = parentheses(style, &line(&inner));
         let plus = if products.is_empty() { "" } else { "+ " };
         if let Some(first) = inner.first_mut().and_then(|product| product.first_mut()) {
-            first.insert_str(0, &format!("{plus}{letter}{open}"));
+            first.insert_str(0, &format!("{plus}{letter}{dot}{open}"));
         }
         if let Some(last) = inner.last_mut().and_then(|product| product.last_mut()) {
             last.push_str(close);
@@ -110,7 +111,7 @@ fn product(style: Style, first: bool, coefficient: &Signed, term: &str) -> Produ
             denominator.text
         )];
     }
-    let (open, close) = style.pick(("(", ")"), ("(", ")"), ("\\bigl(", "\\bigr)"));
+    let (open, close) = parentheses(style, &joined(style, &coefficient.summands));
     let below = match &coefficient.denominator {
         Some(denominator) => format!("/{}", denominator.at(style, Level::Power)),
         None => String::new(),
@@ -148,7 +149,7 @@ fn joined(style: Style, summands: &[(bool, String)]) -> String {
 
 /// A list of terms in short: all of up to `most`, else the first two, a mark of omission, and the last.
 pub(crate) fn folded_terms(style: Style, terms: &[String], most: usize) -> Vec<String> {
-    let write = |term: &String| expression(style, term).at(style, Level::Product);
+    let write = |term: &String| expression(style, term).text;
     if terms.len() <= most.max(3) {
         return terms.iter().map(write).collect();
     }
@@ -180,7 +181,7 @@ mod tests {
         );
         assert_eq!(
             form_line(Style::Latex, &parts),
-            "2\\,t\\,\\frac{F'''}{F} - \\bigl(\\frac{3}{10}\\,t^{2} - \\frac{1}{5}\\bigr)\\,\\frac{F''}{F} - \\frac{F'}{F}"
+            "2\\,t\\,\\frac{F'''}{F} - \\Bigl(\\frac{3}{10}\\,t^{2} - \\frac{1}{5}\\Bigr)\\,\\frac{F''}{F} - \\frac{F'}{F}"
         );
         let parts = [
             part("q", quotient(&[(1, 1, 2), (1, 1, 0)], &[(2, 1, 1)])),

@@ -7,7 +7,7 @@ mod latex_text;
 mod name;
 
 pub(crate) use coefficient::{coefficient, signed};
-pub(crate) use expression::{Level, expression};
+pub(crate) use expression::{Level, expression, summands};
 pub(crate) use form::{Product, combination, folded_terms, form, form_line};
 pub(crate) use latex_text::escape;
 pub(crate) use name::subscripted;

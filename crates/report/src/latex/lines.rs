@@ -5,48 +5,70 @@ use crate::formula::Product;
 /// About the width of a line of text, in letters of a formula.
 const LINE: usize = 68;
 
-/// The display of `left = right`, broken between products where it is too long for a line.
-pub(super) fn equation(left: &str, right: &[Product]) -> String {
-    let left_width = width(left) + 3;
-    // A long left side stands on a line of its own.
-    let alone = left_width > LINE / 2;
-    let room = if alone { LINE } else { LINE - left_width };
-    let mut lines: Vec<String> = Vec::new();
-    let mut line = String::new();
-    let mut column = 0;
-    let mut add = |piece: &str| {
-        let size = width(piece);
-        if column > 0 && column + size > room {
-            lines.push(std::mem::take(&mut line));
-            column = 0;
+/// The display of `left = right`, broken between summands and products where it is too long for a line.
+///
+/// Lines are broken by hand, as automatic breaking needs packages that a plain installation lacks.
+pub(super) fn equation(left: &[String], right: &[Product]) -> String {
+    let whole = left.join(" ");
+    let left_width = width(&whole) + 3;
+    // A long left side stands on lines of its own.
+    let (mut lines, room) = if left_width > LINE / 2 {
+        let mut lines = fill(left.iter().map(String::as_str), LINE);
+        if let Some(first) = lines.first_mut() {
+            first.insert_str(0, "& ");
         }
-        if !line.is_empty() {
-            line.push(' ');
-        }
-        line.push_str(piece);
-        column += size;
+        (lines, LINE)
+    } else {
+        (Vec::new(), LINE - left_width)
     };
+    let mut pieces = Vec::new();
     for product in right {
         let whole = product.join(" ");
         if width(&whole) <= room {
-            add(&whole);
+            pieces.push(whole);
         } else {
-            product.iter().for_each(|part| add(part));
+            pieces.extend(product.iter().cloned());
         }
     }
-    lines.push(line);
-    let mut out = format!("\\begin{{align*}}\n{left}");
-    for (position, line) in lines.iter().enumerate() {
-        match (position, alone) {
-            (0, false) => out.push_str(" &= "),
-            (0, true) => out.push_str(" &= {} \\\\\n&\\quad "),
-            // The empty group makes a sign at the beginning of a line a binary one.
-            _ => out.push_str(" \\\\\n&\\quad {}"),
-        }
-        out.push_str(line);
+    let mut right = fill(pieces.iter().map(String::as_str), room);
+    if let Some(first) = right.first_mut() {
+        let left = if lines.is_empty() {
+            format!("{whole} ")
+        } else {
+            String::new()
+        };
+        first.insert_str(0, &format!("{left}&= "));
     }
-    out.push_str("\n\\end{align*}\n");
-    out
+    // The empty group makes a sign at the beginning of a line a binary one.
+    for line in lines.iter_mut().skip(1).chain(right.iter_mut().skip(1)) {
+        line.insert_str(0, "&\\quad {}");
+    }
+    lines.append(&mut right);
+    format!(
+        "\\begin{{align*}}\n{}\n\\end{{align*}}\n",
+        lines.join(" \\\\\n")
+    )
+}
+
+/// Lines of pieces, none wider than told unless a piece is.
+fn fill<'a>(pieces: impl Iterator<Item = &'a str>, room: usize) -> Vec<String> {
+    let mut lines = vec![String::new()];
+    let mut column = 0;
+    for piece in pieces {
+        let size = width(piece);
+        if column > 0 && column + size > room {
+            lines.push(String::new());
+            column = 0;
+        }
+        if let Some(line) = lines.last_mut() {
+            if !line.is_empty() {
+                line.push(' ');
+            }
+            line.push_str(piece);
+        }
+        column += size;
+    }
+    lines
 }
 
 /// About the width of a formula, in letters: commands count as one letter, a fraction as its wider part.
@@ -69,7 +91,7 @@ fn width(formula: &str) -> usize {
                         count += width(above).max(width(below)) + 1;
                         rest = tail;
                     }
-                    "bigl" | "bigr" | "text" | "mathit" | "operatorname" => {}
+                    "bigl" | "bigr" | "Bigl" | "Bigr" | "text" | "mathit" | "operatorname" => {}
                     "" => rest = &rest[rest.chars().next().map_or(0, char::len_utf8)..],
                     _ => count += 1,
                 }
@@ -113,7 +135,7 @@ mod tests {
     #[test]
     fn long_forms_are_broken_between_products() {
         let right: Vec<Product> = (0..30).map(|n| vec![format!("+ a_{{{n}}}")]).collect();
-        let display = equation("u_{3,0}", &right);
+        let display = equation(&["u_{3,0}".to_owned()], &right);
         assert!(display.contains(" \\\\\n&\\quad {}+ a_{"), "{display}");
         let longest = display.lines().map(width).max().unwrap();
         assert!(longest <= LINE + 4, "{longest}: {display}");

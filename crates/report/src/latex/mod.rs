@@ -2,7 +2,7 @@
 
 mod lines;
 
-use crate::formula::{Level, Style, combination, expression, form};
+use crate::formula::{Style, combination, form, summands};
 use crate::words;
 use lines::equation;
 use linform_engine::record::{ClaimRecord, Finding, FormTerm, Refutation, ResultRecord};
@@ -75,12 +75,13 @@ pub fn latex(record: &ResultRecord) -> String {
 }
 
 fn write_claim(out: &mut String, claim: &ClaimRecord) {
-    let target = match claim.target.as_str() {
-        "" => "\\text{(target unknown)}".to_owned(),
-        target => expression(STYLE, target).at(STYLE, Level::Sum),
+    let parts = match claim.target.as_str() {
+        "" => vec!["\\text{(target unknown)}".to_owned()],
+        target => summands(STYLE, target),
     };
+    let target = parts.join(" ");
     match &claim.finding {
-        Finding::Holds { form: found } => out.push_str(&equation(&target, &form(STYLE, found))),
+        Finding::Holds { form: found } => out.push_str(&equation(&parts, &form(STYLE, found))),
         Finding::Undetermined { particular, kernel } => {
             let letters = words::letters(STYLE, claim, kernel.len());
             let multiples: Vec<(String, &[FormTerm])> = letters
@@ -89,12 +90,12 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
                 .zip(kernel.iter().map(Vec::as_slice))
                 .collect();
             out.push_str(&equation(
-                &target,
+                &parts,
                 &combination(STYLE, particular, &multiples),
             ));
             if !letters.is_empty() {
                 out.push_str(&format!(
-                    "{}.\n",
+                    "{}.\n\n",
                     words::free_choice(STYLE, claim, &letters)
                 ));
             }
@@ -105,7 +106,7 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
             match refutation {
                 Refutation::OtherCoefficients { form: only, .. } => {
                     out.push_str(&format!("; {}\n", words::instead(only)));
-                    out.push_str(&equation(&target, &form(STYLE, only)));
+                    out.push_str(&equation(&parts, &form(STYLE, only)));
                 }
                 _ => out.push_str(".\n\n"),
             }
@@ -118,13 +119,13 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
             ));
         }
     }
-    let mut parts = Vec::new();
+    let mut facts = Vec::new();
     match words::index(STYLE, claim) {
         index if index.is_empty() => {}
-        index => parts.push(index),
+        index => facts.push(index),
     }
     let verdict = claim.finding.verdict();
-    parts.push(if verdict == claim.expected {
+    facts.push(if verdict == claim.expected {
         format!("\\textbf{{{}}}", verdict.word())
     } else {
         format!(
@@ -133,16 +134,16 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
             claim.expected.word()
         )
     });
-    parts.extend(
+    facts.extend(
         claim
             .system
             .as_ref()
             .map(|system| words::shape(STYLE, system)),
     );
-    parts.push(words::evidence(STYLE, claim));
+    facts.push(words::evidence(STYLE, claim));
     out.push_str(&format!(
         "{{\\small {}.",
-        parts.join(words::separator(STYLE))
+        facts.join(words::separator(STYLE))
     ));
     for detail in words::details(STYLE, claim) {
         out.push_str(&format!(" {}.", capitalised(&detail)));
@@ -195,7 +196,7 @@ mod tests {
             "$j = 3$, $k = 0$; \\textbf{holds}; $33 \\times 8$ by matching, fraction-free",
             "$3\\,t$ times the first minus the second leaves $0 = \\frac{2}{3}$.",
             "q^{2} &= \\frac{t^{2} + 1}{2\\,t}\\,\\frac{F'}{F}",
-            "c_{1}\\,\\bigl(",
+            "c_{1}\\,\\Bigl(-\\Bigl(t - \\frac{1}{5}\\Bigr)",
         ] {
             assert!(document.contains(part), "{part}\n{document}");
         }

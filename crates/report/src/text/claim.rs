@@ -88,8 +88,13 @@ fn equation(
     let mut indent = columns(&head);
     let mut first = head;
     if options.width > 0 && indent > options.width / 2 {
-        out.push_str(first.trim_end());
-        out.push('\n');
+        // A sign stays with what follows it.
+        let target = format!("{target} =")
+            .replace("+ ", "+\u{a0}")
+            .replace("− ", "−\u{a0}")
+            .replace("- ", "-\u{a0}")
+            .replace(" =", "\u{a0}=");
+        sentence(out, "  ", &target, 4, options.width);
         first = " ".repeat(6);
         indent = 6;
     }
