@@ -5,8 +5,8 @@ use crate::polynomial::Term;
 
 /// The mixed-radix numbering of all monomials up to a given degree in every symbol.
 ///
-/// *Invariant*: the first symbol is the most significant place, so the order of the numbers is the order of
-/// the monomials; the number of a product is the sum of the numbers, as long as the product lies in the box;
+/// *Invariant*: unless another symbol was asked for, the first one is the most significant place, so that the
+/// order of the numbers is the order of the monomials; the number of a product is the sum of the numbers, as long as the product lies in the box;
 /// the size of the box is below `2^62`.
 #[derive(Debug)]
 pub(crate) struct Layout {
@@ -18,9 +18,20 @@ pub(crate) struct Layout {
 impl Layout {
     /// The box of the monomials that divide `top`, or nothing if it is too large.
     pub(crate) fn new(top: &Monomial) -> Option<Layout> {
+        Layout::in_order((0..top.width()).rev(), top)
+    }
+
+    /// The same with another symbol in the most significant place, so that the numbers have another order.
+    pub(crate) fn led_by(first: usize, top: &Monomial) -> Option<Layout> {
+        let others = (0..top.width()).rev().filter(|&symbol| symbol != first);
+        Layout::in_order(others.chain([first]), top)
+    }
+
+    /// The symbols come least significant first.
+    fn in_order(symbols: impl Iterator<Item = usize>, top: &Monomial) -> Option<Layout> {
         let mut places = Vec::new();
         let mut size = 1u64;
-        for symbol in (0..top.width()).rev() {
+        for symbol in symbols {
             let exponent = top.exponent(symbol);
             if exponent > 0 {
                 let radix = u64::from(exponent) + 1;
@@ -35,6 +46,11 @@ impl Layout {
     /// The number of monomials in the box.
     pub(crate) fn size(&self) -> u64 {
         self.size
+    }
+
+    /// The radices of the symbols that may occur, most significant first.
+    pub(crate) fn radices(&self) -> Vec<u64> {
+        self.places.iter().map(|&(_, radix, _)| radix).collect()
     }
 
     /// The number of a monomial of the box.

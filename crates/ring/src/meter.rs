@@ -1,5 +1,6 @@
 //! Counting of work and of memory inside one operation.
 
+use crate::polynomial::Term;
 use linform_scalar::{Control, Integer, Stop};
 
 /// Units of work between two questions to the control, about a millisecond.
@@ -31,8 +32,8 @@ impl<'a> Meter<'a> {
     #[inline]
     pub(crate) fn work(&mut self, units: usize) -> Result<(), Stop> {
         self.work += units;
-        if self.work >= STEP {
-            self.work = 0;
+        while self.work >= STEP {
+            self.work -= STEP;
             self.control.proceed()?;
         }
         Ok(())
@@ -48,4 +49,16 @@ impl<'a> Meter<'a> {
         }
         Ok(())
     }
+}
+
+/// The units of work in one product of coefficients of at most these lengths.
+pub(crate) fn effort(bits_a: u64, bits_b: u64) -> usize {
+    let words = |bits: u64| bits / 64 + 1;
+    // Long products are faster than the schoolbook's, but for a bound that is of no matter.
+    (4 + words(bits_a).saturating_mul(words(bits_b)) / 2) as usize
+}
+
+/// The length of the longest coefficient, in bits.
+pub(crate) fn longest(terms: &[Term]) -> u64 {
+    terms.iter().map(|(_, c)| c.bits()).max().unwrap_or(0)
 }

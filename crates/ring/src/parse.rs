@@ -1,7 +1,7 @@
 //! Reading polynomials from text.
 
 use crate::{Polynomial, Symbols};
-use linform_scalar::{Control, Integer, Rational, Stop};
+use linform_scalar::{Control, Integer, Rational, Stop, Unlimited};
 use std::fmt;
 use std::sync::atomic::{AtomicU32, Ordering};
 
@@ -14,7 +14,7 @@ const LONGEST_NUMBER: usize = 100_000;
 /// The largest number of terms of a product or power within the text.
 const MOST_TERMS: usize = 200_000;
 /// How often the products of one text may ask whether to go on: some tenths of a second.
-const MOST_STEPS: u32 = 400;
+const MOST_STEPS: u32 = 2000;
 
 /// A text is no polynomial in the given symbols, or exceeds a bound.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -212,9 +212,13 @@ impl<'a> Reader<'a> {
             if self.take('*') {
                 let negative = self.signs();
                 let factor = self.power()?;
-                result = result
-                    .mul(&factor, &self.budget)
-                    .map_err(|stop| self.stopped(stop))?;
+                // Products of single terms (and their powers) make up any canonical text, and their work is bounded by its length.
+                let product = if result.len() <= 1 && factor.len() <= 1 {
+                    result.mul(&factor, &Unlimited)
+                } else {
+                    result.mul(&factor, &self.budget)
+                };
+                result = product.map_err(|stop| self.stopped(stop))?;
                 if negative {
                     result = -&result;
                 }
@@ -248,8 +252,12 @@ impl<'a> Reader<'a> {
             Ok(exponent) if exponent <= u32::from(crate::Monomial::MAX_EXPONENT) => exponent,
             _ => return Err(self.error(ParseErrorKind::ExponentTooLarge)),
         };
-        base.pow(exponent, &self.budget)
-            .map_err(|stop| self.stopped(stop))
+        let power = if base.len() <= 1 {
+            base.pow(exponent, &Unlimited)
+        } else {
+            base.pow(exponent, &self.budget)
+        };
+        power.map_err(|stop| self.stopped(stop))
     }
 
     fn atom(&mut self) -> Result<Polynomial, ParseError> {

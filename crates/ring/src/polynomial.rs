@@ -283,6 +283,19 @@ fn gcd_of(start: Integer, terms: &[Term]) -> Integer {
     common
 }
 
+/// The largest monomial that divides every term.
+pub(crate) fn common_monomial(terms: &[Term]) -> Monomial {
+    // The last monomial is the lowest; often it is 1.
+    let mut common = terms.last().map(|(m, _)| m.clone()).unwrap_or_default();
+    for (monomial, _) in terms {
+        if common.is_one() {
+            break;
+        }
+        common = common.gcd(monomial);
+    }
+    common
+}
+
 /// Sorts terms, adds those with equal monomials and leaves out zeros.
 pub(crate) fn collect_terms(mut terms: Vec<Term>) -> Vec<Term> {
     terms.sort_by(|(a, _), (b, _)| b.cmp(a));

@@ -2,7 +2,7 @@
 
 use crate::Monomial;
 use crate::layout::Layout;
-use crate::meter::Meter;
+use crate::meter::{Meter, effort, longest};
 use crate::polynomial::Term;
 use linform_scalar::{Integer, Stop};
 use std::collections::BinaryHeap;
@@ -65,6 +65,8 @@ fn keyed_quotient<K: Ord + Clone>(
     meter: &mut Meter<'_>,
 ) -> Result<Option<Vec<(K, Integer)>>, Stop> {
     let lead = &divisor[0].1;
+    // Quotients are mostly no longer than their dividends.
+    let effort = effort(longest(dividend), longest(divisor));
     let mut quotient: Vec<(K, Integer)> = Vec::new();
     // The entry (key, i) stands for quotient[i]·divisor[next[i]].
     let mut heap: BinaryHeap<(K, usize)> = BinaryHeap::new();
@@ -87,7 +89,7 @@ fn keyed_quotient<K: Ord + Clone>(
         {
             let i = entry.1;
             let j = next[i];
-            meter.work(4)?;
+            meter.work(effort)?;
             rest.sub_product(&quotient[i].1, &divisor[j].1);
             next[i] = j + 1;
             match divisor_keys.get(j + 1) {

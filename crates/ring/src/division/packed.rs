@@ -2,14 +2,10 @@
 
 use crate::Monomial;
 use crate::layout::Layout;
-use crate::meter::Meter;
+use crate::meter::{Meter, longest};
 use crate::polynomial::Term;
 use crate::product::kronecker::{pack, unpack};
 use linform_scalar::Stop;
-
-fn longest(terms: &[Term]) -> u64 {
-    terms.iter().map(|(_, c)| c.bits()).max().unwrap_or(0)
-}
 
 /// The bits with which a first attempt is made: enough whenever the coefficients of the quotient are as much
 /// shorter than the dividend's as those of the divisor are long.
@@ -33,6 +29,8 @@ pub(super) fn quotient(
 ) -> Result<Option<Vec<Term>>, Stop> {
     let mut bits = slot_bits(dividend, divisor);
     for _ in 0..3 {
+        let words = layout.size().saturating_mul(bits) / 64;
+        meter.work(words.saturating_mul(words.isqrt().min(100)) as usize)?;
         let (a, b) = (pack(layout, bits, dividend), pack(layout, bits, divisor));
         let (value, remainder) = a.div_rem_euclid(&b);
         if !remainder.is_zero() {

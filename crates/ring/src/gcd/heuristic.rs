@@ -1,17 +1,17 @@
 //! The gcd by way of one gcd of integers.
 
-use crate::Polynomial;
 use crate::layout::Layout;
 use crate::meter::Meter;
 use crate::product::kronecker::{pack, unpack};
+use crate::{Monomial, Polynomial};
 use linform_scalar::{Control, Stop};
 
-/// The longest integers whose gcd is taken, in words: some tenths of a second.
-const MOST_WORDS: u64 = 1 << 15;
+/// The longest integers whose gcd is taken, in words: some ten milliseconds.
+const MOST_WORDS: u64 = 1 << 13;
 const ATTEMPTS: u64 = 6;
 
-/// The gcd of two primitive polynomials in the same symbols, or nothing if no attempt succeeded (B. W. Char,
-/// K. O. Geddes & G. H. Gonnet, J. Symbolic Comput. 7 (1989) 31–48).
+/// The gcd of two primitive polynomials, or nothing if no attempt succeeded (B. W. Char, K. O. Geddes & G. H.
+/// Gonnet, J. Symbolic Comput. 7 (1989) 31–48); every monomial of the gcd divides `bounds`.
 ///
 /// Both are evaluated at `x_n = ξ_n, …, x_1 = ξ_1` with powers of 2 so far apart that the values hold all
 /// coefficients as digits; the gcd of the values is read as a polynomial `c·G` with `G` primitive. If `G` divides
@@ -22,10 +22,10 @@ const ATTEMPTS: u64 = 6;
 pub(super) fn gcd(
     a: &Polynomial,
     b: &Polynomial,
+    bounds: &Monomial,
     control: &dyn Control,
 ) -> Result<Option<Polynomial>, Stop> {
     let top = a.degrees().lcm(&b.degrees());
-    let smaller = a.degrees().gcd(&b.degrees());
     let Some(layout) = Layout::new(&top) else {
         return Ok(None);
     };
@@ -41,7 +41,7 @@ pub(super) fn gcd(
         let terms = unpack(&layout, bits, &value, &mut Meter::new(control))?;
         let candidate = Polynomial::integral(terms).primitive_part();
         // A wrong candidate mostly betrays itself by its degrees.
-        if candidate.degrees().divides(&smaller)
+        if candidate.degrees().divides(bounds)
             && divides(&candidate, a, control)?
             && divides(&candidate, b, control)?
         {

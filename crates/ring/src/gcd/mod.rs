@@ -1,11 +1,14 @@
 //! Greatest common divisors.
 
 mod heuristic;
+mod modular;
+mod probe;
 mod remainders;
 #[cfg(test)]
 mod tests;
+mod univariate;
 
-use crate::polynomial::{Term, collect_terms};
+use crate::polynomial::{Term, collect_terms, common_monomial};
 use crate::{Monomial, Polynomial};
 use linform_scalar::{Control, Stop};
 
@@ -19,7 +22,9 @@ impl Polynomial {
     /// # Complexity
     ///
     /// Mostly that of one gcd of integers that hold all coefficients of the box of the operands, and of two exact
-    /// divisions. Where such integers would be too long: that of a subresultant remainder sequence.
+    /// divisions. Where such integers would be too long: that of univariate gcds modulo primes, at as many points
+    /// as the gcd has monomials in its box without the first symbol. Where the box is beyond a word: that of a
+    /// subresultant remainder sequence.
     pub fn gcd(&self, other: &Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
         if self.is_zero() {
             return Ok(other.primitive_part());
@@ -37,43 +42,42 @@ fn primitive_gcd(a: Polynomial, b: Polynomial, control: &dyn Control) -> Result<
     if a == b {
         return Ok(a);
     }
-    let (monomial_a, monomial_b) = (common_monomial(&a), common_monomial(&b));
+    let (monomial_a, monomial_b) = (common_monomial(a.terms()), common_monomial(b.terms()));
     let common = monomial_a.gcd(&monomial_b);
     let (a, b) = (without(&a, &monomial_a), without(&b, &monomial_b));
-    let rest = if a.degrees().is_one() || b.degrees().is_one() {
-        Polynomial::one()
-    } else if let Some(result) = without_foreign_symbols(&a, &b, control)? {
-        result
-    } else if let Some(result) = heuristic::gcd(&a, &b, control)? {
-        result
-    } else {
-        remainders::gcd(&a, &b, control)?
-    };
+    let rest = gcd_of_general(a, b, control)?;
     let multiplied = |(m, c): &Term| Some((m.checked_mul(&common)?, c.clone()));
     let terms: Option<Vec<Term>> = rest.terms().iter().map(multiplied).collect();
     Ok(Polynomial::integral(terms.ok_or(Stop::SizeLimit)?))
 }
 
-/// The gcd where one operand holds a symbol that the other does not: a common divisor is free of it, so it
-/// divides every coefficient with respect to it. Nothing if both hold the same symbols.
-fn without_foreign_symbols(
-    a: &Polynomial,
-    b: &Polynomial,
-    control: &dyn Control,
-) -> Result<Option<Polynomial>, Stop> {
-    let (degrees_a, degrees_b) = (a.degrees(), b.degrees());
-    let width = degrees_a.width().max(degrees_b.width());
-    let occurs = |degrees: &Monomial, symbol: usize| degrees.exponent(symbol) > 0;
-    let shared: Vec<bool> = (0..width)
-        .map(|symbol| occurs(&degrees_a, symbol) && occurs(&degrees_b, symbol))
-        .collect();
-    if (0..width).all(|s| shared[s] || !occurs(&degrees_a, s) && !occurs(&degrees_b, s)) {
-        return Ok(None);
+/// The gcd of two primitive polynomials that no monomial divides.
+fn gcd_of_general(a: Polynomial, b: Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
+    let bounds = probe::degree_bounds(&a, &b, control)?;
+    if bounds.is_one() {
+        return Ok(Polynomial::one());
     }
-    let mut parts = coefficients(a, &shared);
-    parts.extend(coefficients(b, &shared));
-    parts.sort_by_key(Polynomial::len);
-    gcd_of_all(&parts, control).map(Some)
+    let all = a.degrees().lcm(&b.degrees());
+    let shared: Vec<bool> = (0..all.width()).map(|s| bounds.exponent(s) > 0).collect();
+    if (0..all.width()).any(|s| !shared[s] && all.exponent(s) > 0) {
+        // A common divisor that is free of a symbol divides every coefficient with respect to it.
+        let mut parts = coefficients(&a, &shared);
+        parts.extend(coefficients(&b, &shared));
+        parts.sort_by_key(Polynomial::len);
+        return gcd_of_all(&parts, control);
+    }
+    for (divisor, other) in [(&a, &b), (&b, &a)] {
+        if divisor.degrees() == bounds && other.div_exact(divisor, control)?.is_some() {
+            return Ok(divisor.primitive_part());
+        }
+    }
+    if let Some(result) = heuristic::gcd(&a, &b, &bounds, control)? {
+        return Ok(result);
+    }
+    if let Some(result) = modular::gcd(&a, &b, control)? {
+        return Ok(result);
+    }
+    remainders::gcd(&a, &b, control)
 }
 
 /// The coefficients with respect to the symbols that are not marked.
@@ -106,13 +110,6 @@ fn gcd_of_all(parts: &[Polynomial], control: &dyn Control) -> Result<Polynomial,
         }
     }
     Ok(common)
-}
-
-/// The largest monomial that divides every term.
-fn common_monomial(p: &Polynomial) -> Monomial {
-    let mut monomials = p.terms().iter().map(|(m, _)| m);
-    let first = monomials.next().cloned().unwrap_or_default();
-    monomials.fold(first, |common, m| common.gcd(m))
 }
 
 fn without(p: &Polynomial, divisor: &Monomial) -> Polynomial {

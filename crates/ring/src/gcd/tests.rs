@@ -22,6 +22,8 @@ fn divides(a: &Polynomial, b: &Polynomial) -> bool {
 }
 
 proptest! {
+    #![proptest_config(ProptestConfig::with_cases(64))]
+
     #[test]
     fn a_planted_common_divisor_divides_the_gcd(a in polynomials(6, 3), b in polynomials(6, 3), common in polynomials(5, 3)) {
         let (x, y) = (a.mul(&common, &Unlimited).unwrap(), b.mul(&common, &Unlimited).unwrap());
@@ -39,14 +41,15 @@ proptest! {
     }
 
     #[test]
-    fn integers_and_remainder_sequences_find_the_same_gcd(a in polynomials(4, 2), b in polynomials(4, 2), common in polynomials(4, 2)) {
+    fn integers_images_and_remainder_sequences_find_the_same_gcd(a in polynomials(4, 2), b in polynomials(4, 2), common in polynomials(4, 2)) {
         let product = |p: &Polynomial| p.mul(&common, &Unlimited).unwrap().primitive_part();
         let (x, y) = (product(&a), product(&b));
         if x.is_zero() || y.is_zero() {
             return Ok(());
         }
         let by_remainders = remainders::gcd(&x, &y, &Unlimited).unwrap();
-        if let Some(by_integers) = heuristic::gcd(&x, &y, &Unlimited).unwrap() {
+        prop_assert_eq!(modular::gcd(&x, &y, &Unlimited).unwrap(), Some(by_remainders.clone()));
+        if let Some(by_integers) = heuristic::gcd(&x, &y, &x.degrees().gcd(&y.degrees()), &Unlimited).unwrap() {
             prop_assert_eq!(by_integers, by_remainders.clone());
         }
         prop_assert_eq!(x.gcd(&y, &Unlimited).unwrap(), by_remainders);
@@ -73,7 +76,7 @@ fn long_univariate_gcds_are_found() {
 }
 
 #[test]
-fn gcds_in_a_box_too_large_for_integers_are_found_by_remainders() {
+fn gcds_in_a_box_too_large_for_integers_are_found_by_images() {
     let x = |i, e| Polynomial::monomial(Monomial::power(i, e).unwrap(), 1.into());
     let sum = |parts: &[Polynomial]| parts.iter().fold(Polynomial::one(), |s, p| &s + p);
     let common = sum(&[x(0, 1), x(1, 3000)]);
@@ -83,7 +86,25 @@ fn gcds_in_a_box_too_large_for_integers_are_found_by_remainders() {
     let b = sum(&[x(0, 1), x(1, 5), x(2, 901)])
         .mul(&common, &Unlimited)
         .unwrap();
-    assert_eq!(heuristic::gcd(&a, &b, &Unlimited), Ok(None));
+    assert_eq!(
+        heuristic::gcd(&a, &b, &common.degrees(), &Unlimited),
+        Ok(None)
+    );
+    assert_eq!(a.gcd(&b, &Unlimited).unwrap(), common);
+}
+
+#[test]
+fn gcds_in_a_box_beyond_a_word_are_found_by_remainders() {
+    let x = |i, e| Polynomial::monomial(Monomial::power(i, e).unwrap(), 1.into());
+    let sum = |e| (0..31).fold(Polynomial::one(), |s, i| &s + &x(i, e));
+    let common = &sum(1) + &x(0, 1);
+    let a = (&x(0, 1) + &sum(3)).mul(&common, &Unlimited).unwrap();
+    let b = (&x(0, 1) - &sum(3)).mul(&common, &Unlimited).unwrap();
+    assert_eq!(
+        heuristic::gcd(&a, &b, &common.degrees(), &Unlimited),
+        Ok(None)
+    );
+    assert_eq!(modular::gcd(&a, &b, &Unlimited), Ok(None));
     assert_eq!(a.gcd(&b, &Unlimited).unwrap(), common);
 }
 

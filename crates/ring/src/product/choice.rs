@@ -129,7 +129,7 @@ impl Operands {
 ///
 /// A polynomial whose monomials span an affine space of dimension `d` has, cancellation aside, at least
 /// `binomial(e + d, d)` terms in its power `e`, for it contains the corners of a simplex; their coefficients have
-/// on average some `e·log₂(terms)/2` bits or more.
+/// on average some `e·(b + log₂(terms)/2)` bits, where `b` is the average for the base.
 pub(super) fn admit_power(
     base: &Polynomial,
     exponent: u32,
@@ -168,8 +168,11 @@ pub(super) fn admit_power(
             return Err(Stop::SizeLimit);
         }
     }
-    let spread = u64::from(base.len().ilog2()).saturating_mul(e) / 16;
-    if terms * u128::from(spread) > MOST_BYTES {
+    // A sum of sets of integers has at least as many elements as both together less one.
+    terms = terms.max(u128::from(e) * (base.len() as u128 - 1) + 1);
+    let bits: u64 = base.iter().map(|(_, c)| c.bits() - 1).sum();
+    let twice = 2 * bits / base.len() as u64 + u64::from(base.len().ilog2());
+    if terms.saturating_mul(u128::from(twice.saturating_mul(e) / 16)) > MOST_BYTES {
         return Err(Stop::SizeLimit);
     }
     Ok(())

@@ -1,7 +1,7 @@
 //! Products with one accumulator for each monomial of the box.
 
 use crate::layout::Layout;
-use crate::meter::Meter;
+use crate::meter::{Meter, effort, longest};
 use crate::polynomial::Term;
 use linform_scalar::{Integer, Stop};
 
@@ -67,10 +67,10 @@ pub(super) fn product_integers(
     meter: &mut Meter<'_>,
 ) -> Result<Vec<Term>, Stop> {
     let numbers = layout.numbers(long);
+    let effort = effort(longest(short), longest(long));
     let mut accumulators = vec![Integer::ZERO; layout.size() as usize];
     for (monomial, a) in short {
         let start = layout.number(monomial);
-        let effort = 8 + (a.bits() / 64) as usize;
         for ((_, b), number) in long.iter().zip(&numbers) {
             meter.work(effort)?;
             accumulators[(start + number) as usize].add_product(a, b);

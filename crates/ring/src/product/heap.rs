@@ -2,7 +2,7 @@
 
 use crate::Monomial;
 use crate::layout::Layout;
-use crate::meter::Meter;
+use crate::meter::{Meter, effort, longest};
 use crate::polynomial::Term;
 use linform_scalar::{Integer, Stop};
 use std::collections::BinaryHeap;
@@ -42,6 +42,7 @@ fn keyed_product<K: Ord + Clone>(
     meter: &mut Meter<'_>,
 ) -> Result<Vec<(K, Integer)>, Stop> {
     let key = |i: usize, j: usize| multiply(&short_keys[i], &long_keys[j]).ok_or(Stop::SizeLimit);
+    let effort = effort(longest(short), longest(long));
     let mut result = Vec::with_capacity(long.len());
     // For each term of the short factor, the next term of the long one.
     let mut next = vec![0usize; short.len()];
@@ -59,7 +60,7 @@ fn keyed_product<K: Ord + Clone>(
             }
             let i = entry.1;
             let j = next[i];
-            meter.work(4)?;
+            meter.work(effort)?;
             sum.add_product(&short[i].1, &long[j].1);
             next[i] = j + 1;
             if j + 1 < long.len() {

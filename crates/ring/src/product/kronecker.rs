@@ -14,6 +14,8 @@ pub(super) fn product(
     b: &[Term],
     meter: &mut Meter<'_>,
 ) -> Result<Vec<Term>, Stop> {
+    let words = layout.size().saturating_mul(bits) / 64;
+    meter.work(words.saturating_mul(words.isqrt().min(100)) as usize)?;
     let x = pack(layout, bits, a);
     // GMP squares faster than it multiplies, but only knows one operand by its address.
     let product = if a == b {

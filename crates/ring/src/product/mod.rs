@@ -9,7 +9,7 @@ mod tests;
 
 use crate::layout::Layout;
 use crate::meter::{MOST_BITS, Meter};
-use crate::polynomial::Term;
+use crate::polynomial::{Term, common_monomial};
 use crate::sum::merge;
 use crate::{Monomial, Polynomial};
 pub use choice::ProductMethod;
@@ -122,6 +122,20 @@ pub(crate) fn product(
     if let [(monomial, coefficient)] = short {
         return shifted(monomial, coefficient, long, &mut meter);
     }
+    let (low_a, low_b) = (common_monomial(short), common_monomial(long));
+    if !low_a.is_one() || !low_b.is_one() {
+        // The box then begins at 1, which matters most for the upper halves of a divided operand.
+        let terms = product(
+            method,
+            &lowered(short, &low_a),
+            &lowered(long, &low_b),
+            control,
+        )?;
+        let low = low_a.checked_mul(&low_b).ok_or(Stop::SizeLimit)?;
+        let raised = |(m, c): Term| Some((m.checked_mul(&low)?, c));
+        let terms: Option<Vec<Term>> = terms.into_iter().map(raised).collect();
+        return terms.ok_or(Stop::SizeLimit);
+    }
     let layout = Layout::new(&operands.top);
     match operands.choose(method, layout) {
         choice::Plan::Words(layout) => dense::product_words(&layout, short, long, &mut meter),
@@ -137,6 +151,11 @@ pub(crate) fn product(
             Ok(merge(&head, &Integer::ONE, &tail, &Integer::ONE))
         }
     }
+}
+
+fn lowered(terms: &[Term], divisor: &Monomial) -> Vec<Term> {
+    let divided = |(m, c): &Term| Some((m.div(divisor)?, c.clone()));
+    terms.iter().filter_map(divided).collect()
 }
 
 fn shifted(

@@ -7,7 +7,7 @@ use proptest::prelude::*;
 
 /// Polynomials in a few symbols, dense or sparse, with short or long coefficients.
 fn polynomials() -> impl Strategy<Value = Polynomial> {
-    let exponent = prop_oneof![4 => 0u16..4, 1 => 0u16..300];
+    let exponent = prop_oneof![4 => 0u16..4, 1 => 0u16..60];
     let coefficient = prop_oneof![
         (-3i64..4).prop_map(Integer::from),
         prop_oneof![Just(i64::MIN), Just(i64::MAX), Just(-1)].prop_map(Integer::from),
@@ -31,6 +31,8 @@ fn written_out(a: &Polynomial, b: &Polynomial) -> Polynomial {
 }
 
 proptest! {
+    #![proptest_config(ProptestConfig::with_cases(96))]
+
     #[test]
     fn every_method_gives_the_product(a in polynomials(), b in polynomials()) {
         let expected = written_out(&a, &b);
@@ -61,9 +63,9 @@ fn products_in_a_box_beyond_a_word_are_formed_by_the_heap() {
 
 #[test]
 fn long_dense_products_are_halved() {
-    // 3000 coefficients of 400 bits make integers beyond the longest uninterrupted product.
-    let big = Integer::from(3).pow(250);
-    let a = Polynomial::from_terms((0..3000u16).map(|i| {
+    // 1200 coefficients of 2000 bits make integers beyond the longest uninterrupted product.
+    let big = Integer::from(3).pow(1260);
+    let a = Polynomial::from_terms((0..1200u16).map(|i| {
         (
             Monomial::power(0, i).unwrap(),
             Rational::from(&big + &Integer::from(u32::from(i))),
@@ -77,7 +79,7 @@ fn long_dense_products_are_halved() {
             .sum()
     };
     assert_eq!(value(&square), &value(&a) * &value(&a));
-    assert_eq!(square.len(), 5999);
+    assert_eq!(square.len(), 2399);
 }
 
 #[test]
