@@ -10,6 +10,10 @@ mod latex;
 mod samples;
 mod sanitise;
 mod script;
+#[cfg(test)]
+mod strategies;
+#[cfg(test)]
+mod tests;
 mod text;
 mod words;
 

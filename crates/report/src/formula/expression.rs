@@ -1,9 +1,9 @@
 //! Expressions of a spec.
 
+use super::call::{call, small};
 use super::name::{name, power, power_may_follow, primes};
 use super::{Style, escape};
 use crate::sanitise::visible;
-use linform_scalar::Integer;
 use linform_spec::{Expr, ExprKind, Function, parse_expression};
 
 /// How tightly a formula holds together.
@@ -27,7 +27,7 @@ pub(crate) struct Written {
 }
 
 impl Written {
-    fn new(text: impl Into<String>, level: Level) -> Written {
+    pub(super) fn new(text: impl Into<String>, level: Level) -> Written {
         Written {
             text: text.into(),
             level,
@@ -100,7 +100,7 @@ pub(crate) fn expression(style: Style, text: &str) -> Written {
 }
 
 // Trees of the parser have a bounded depth, so recursion is safe.
-fn write(style: Style, expr: &Expr) -> Written {
+pub(super) fn write(style: Style, expr: &Expr) -> Written {
     let at = |expr: &Expr, level| write(style, expr).at(style, level);
     match &expr.kind {
         ExprKind::Number(value) => Written::new(value.to_string(), Level::Atom),
@@ -259,7 +259,7 @@ fn derived(style: Style, expr: &Expr, order: u32) -> Written {
     }
 }
 
-fn with_primes(style: Style, base: &str, order: u32) -> Written {
+pub(super) fn with_primes(style: Style, base: &str, order: u32) -> Written {
     let level = if power_may_follow(style, order) {
         Level::Atom
     } else {
@@ -268,12 +268,12 @@ fn with_primes(style: Style, base: &str, order: u32) -> Written {
     Written::new(format!("{base}{}", primes(style, order)), level)
 }
 
-fn list(style: Style, items: &[Expr]) -> String {
+pub(super) fn list(style: Style, items: &[Expr]) -> String {
     let items: Vec<String> = items.iter().map(|item| write(style, item).text).collect();
     items.join(",")
 }
 
-fn bounds(style: Style, expr: &Expr) -> (String, String) {
+pub(super) fn bounds(style: Style, expr: &Expr) -> (String, String) {
     match &expr.kind {
         ExprKind::For { sweep, .. } => (
             write(style, &sweep.start).text,
@@ -335,86 +335,6 @@ fn is_letter_power(expr: &Expr) -> bool {
                 && (is_letter_power(left) || matches!(left.kind, ExprKind::Number(_)))
         }
         _ => false,
-    }
-}
-
-fn call(style: Style, function: Function, arguments: &[Expr]) -> Written {
-    let derivative = |law: &Expr, order: u32| {
-        let base = write(style, law).at(style, Level::Atom);
-        with_primes(style, &base, order)
-    };
-    match (function, arguments) {
-        (Function::Ratio, [law, order]) if small(order).is_some() => {
-            let order = small(order).unwrap_or_default();
-            let (above, below) = (derivative(law, order).text, derivative(law, 0).text);
-            match style {
-                _ if order == 0 => Written::new("1", Level::Atom),
-                Style::Latex => Written::new(format!("\\frac{{{above}}}{{{below}}}"), Level::Power),
-                _ => Written::new(format!("{above}/{below}"), Level::Product),
-            }
-        }
-        (Function::Derivative, [law, order]) if small(order).is_some() => {
-            derivative(law, small(order).unwrap_or_default())
-        }
-        (Function::Minor, [family, rows, columns]) if style != Style::Ascii => {
-            let (family, rows, columns) = (
-                write(style, family).text,
-                bare(style, rows),
-                bare(style, columns),
-            );
-            match style {
-                Style::Latex => Written::new(
-                    format!("\\det\\bigl({family}_{{ik}}\\bigr)_{{i={rows};\\,k={columns}}}"),
-                    Level::Power,
-                ),
-                _ => Written::new(format!("det {family}[{rows}|{columns}]"), Level::Power),
-            }
-        }
-        (Function::Sum, [body]) if style == Style::Latex => match &body.kind {
-            ExprKind::For {
-                body: summand,
-                sweep,
-            } => {
-                let (start, end) = bounds(style, body);
-                let summand = write(style, summand).at(style, Level::Product);
-                let variable = name(style, &sweep.variable);
-                Written::new(
-                    format!("\\sum_{{{variable}={start}}}^{{{end}}} {summand}"),
-                    Level::Sum,
-                )
-            }
-            _ => write(style, body),
-        },
-        (Function::Sqrt, [argument]) if style == Style::Latex => Written::new(
-            format!("\\sqrt{{{}}}", write(style, argument).text),
-            Level::Atom,
-        ),
-        _ => {
-            let name = style.pick(
-                function.name().to_owned(),
-                function.name().to_owned(),
-                format!("\\operatorname{{{}}}", function.name()),
-            );
-            Written::new(format!("{name}({})", list(style, arguments)), Level::Atom)
-        }
-    }
-}
-
-/// The items of a list without its brackets.
-fn bare(style: Style, expr: &Expr) -> String {
-    match &expr.kind {
-        ExprKind::List(items) => list(style, items),
-        _ => write(style, expr).text,
-    }
-}
-
-fn small(expr: &Expr) -> Option<u32> {
-    match &expr.kind {
-        ExprKind::Number(value) => {
-            Integer::to_i64(value).and_then(|value| u32::try_from(value).ok())
-        }
-        ExprKind::Group(inner) => small(inner),
-        _ => None,
     }
 }
 

@@ -1,5 +1,6 @@
 //! Formulas: the expressions of a spec and the coefficients of a result, as plain text, Unicode text or LaTeX.
 
+mod call;
 mod coefficient;
 mod expression;
 mod form;

@@ -163,22 +163,7 @@ fn capitalised(sentence: &str) -> String {
 mod tests {
     use super::*;
     use crate::samples;
-
-    /// The depth of braces at the end, and the smallest on the way; escaped braces do not count.
-    fn braces(text: &str) -> (i64, i64) {
-        let (mut depth, mut least, mut escaped) = (0i64, 0i64, false);
-        for c in text.chars() {
-            match (escaped, c) {
-                (true, _) => escaped = false,
-                (false, '\\') => escaped = true,
-                (false, '{') => depth += 1,
-                (false, '}') => depth -= 1,
-                _ => {}
-            }
-            least = least.min(depth);
-        }
-        (depth, least)
-    }
+    use crate::tests::braces;
 
     #[test]
     fn a_document_is_complete_and_balanced() {

@@ -7,7 +7,7 @@ use linform_engine::published::{Coefficient, PublishedPolynomial};
 use linform_engine::record::{Finding, FormTerm, ResultRecord};
 use linform_engine::{Arithmetic, Prepared, PrimitiveElement, YieldedElement};
 use linform_scalar::Rational;
-use linform_scalar::published::publish_rational;
+use linform_scalar::published::{One, publish_rational};
 use std::collections::HashMap;
 
 pub(super) struct Emitter<'a> {
@@ -64,16 +64,16 @@ impl<'a> Emitter<'a> {
     ) -> Result<String, ScriptError> {
         let mut terms = Vec::new();
         for (exponents, value) in polynomial.terms() {
-            let mut term = self.dialect.rational(value);
-            for (exponent, name) in exponents
-                .iter()
-                .zip(names)
-                .filter(|(exponent, _)| **exponent > 0)
-            {
+            let mut factors = Vec::new();
+            let powers = exponents.iter().zip(names);
+            for (exponent, name) in powers.filter(|(exponent, _)| **exponent > 0) {
                 let base = symbol(self.symbol_named(name)?);
-                term.push_str(&format!("*{}", self.dialect.power(&base, *exponent)));
+                factors.push(self.dialect.power(&base, *exponent));
             }
-            terms.push(term);
+            if factors.is_empty() || !value.is_one() {
+                factors.insert(0, self.dialect.rational(value));
+            }
+            terms.push(factors.join("*"));
         }
         match terms.len() {
             0 => Ok("c(0)".to_owned()),

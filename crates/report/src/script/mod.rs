@@ -8,6 +8,9 @@ mod dialect;
 mod emitter;
 mod error;
 
+#[cfg(test)]
+mod tests;
+
 pub use error::ScriptError;
 
 use crate::sanitise::excerpt;
