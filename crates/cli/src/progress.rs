@@ -1,0 +1,54 @@
+//! The progress bar.
+
+use indicatif::{ProgressBar, ProgressDrawTarget, ProgressStyle};
+use linform_engine::Observer;
+use std::time::Duration;
+
+/// A bar on standard error, drawn only on a terminal and only for work that lasts.
+pub(crate) struct Progress {
+    bar: ProgressBar,
+}
+
+impl Progress {
+    pub(crate) fn new(quiet: bool) -> Progress {
+        let target = if quiet {
+            ProgressDrawTarget::hidden()
+        } else {
+            ProgressDrawTarget::stderr_with_hz(10)
+        };
+        let bar = ProgressBar::with_draw_target(None, target);
+        if let Ok(style) =
+            ProgressStyle::with_template("{msg} {bar:30} {pos}/{len}, about {eta} left")
+        {
+            bar.set_style(style);
+        }
+        bar.enable_steady_tick(Duration::from_millis(200));
+        Progress { bar }
+    }
+
+    pub(crate) fn finish(&self) {
+        self.bar.finish_and_clear();
+    }
+
+    fn show(&self, message: &'static str, done: usize, total: usize) {
+        if self.bar.message() != message {
+            self.bar.reset();
+            self.bar.set_message(message);
+        }
+        self.bar.set_length(total as u64);
+        self.bar.set_position(done as u64);
+    }
+}
+
+impl Observer for Progress {
+    fn evaluated(&self, done: usize, total: usize) {
+        // One definition takes microseconds: redrawing for each would cost more than the work.
+        if done % 64 == 0 || done == total {
+            self.show("evaluating definitions", done, total);
+        }
+    }
+
+    fn decided(&self, done: usize, total: usize) {
+        self.show("deciding claims", done, total);
+    }
+}
