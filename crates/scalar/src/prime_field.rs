@@ -98,6 +98,14 @@ impl PrimeField {
         self.sub(a, self.mul(b, c))
     }
 
+    /// `a·b − c·d`, with one reduction.
+    #[inline(always)]
+    pub fn cross(&self, a: u64, b: u64, c: u64, d: u64) -> u64 {
+        // Below 2p² < p·2^63, because p < 2^62.
+        let wide = u128::from(a) * u128::from(b) + u128::from(c) * u128::from(self.prime - d);
+        self.reduce(wide)
+    }
+
     /// The power.
     pub fn pow(&self, mut base: u64, mut exponent: u64) -> u64 {
         let mut result = self.one;
@@ -119,6 +127,32 @@ impl PrimeField {
         } else {
             Some(self.pow(a, self.prime - 2))
         }
+    }
+
+    /// Replaces all elements by their inverses; nothing changes and the answer is `false` if one of them is 0.
+    ///
+    /// # Complexity
+    ///
+    /// One inversion and three products for each element (P. L. Montgomery, Math. Comp. 48 (1987) 243–264).
+    pub fn invert_all(&self, elements: &mut [u64]) -> bool {
+        let mut product = self.one;
+        let before: Vec<u64> = elements
+            .iter()
+            .map(|&element| {
+                let before = product;
+                product = self.mul(product, element);
+                before
+            })
+            .collect();
+        let Some(mut inverse) = self.inverse(product) else {
+            return false;
+        };
+        for (element, before) in elements.iter_mut().zip(before).rev() {
+            let own = self.mul(inverse, before);
+            inverse = self.mul(inverse, *element);
+            *element = own;
+        }
+        true
     }
 
     /// The element of an integer.
@@ -214,6 +248,14 @@ mod tests {
             prop_assert_eq!(u128::from(field.value(field.sub(x, y))), (a + wide - b) % wide);
             prop_assert_eq!(u128::from(field.value(field.mul(x, y))), a * b % wide);
             prop_assert_eq!(u128::from(field.value(field.sub_product(x, y, z))), (a + wide - b * c % wide) % wide);
+            let crossed = (a * b + (wide - c) * (b + 1)) % wide;
+            prop_assert_eq!(u128::from(field.value(field.cross(x, y, z, field.add(y, field.one())))), crossed);
+            let mut inverses = [x, y, z];
+            if field.invert_all(&mut inverses) {
+                prop_assert_eq!(Some(inverses), [x, y, z].map(|e| field.inverse(e).unwrap()).into());
+            } else {
+                prop_assert!(a * b * c == 0 && inverses == [x, y, z]);
+            }
             let power = (0..exponent).fold(1 % wide, |power, _| power * a % wide);
             prop_assert_eq!(u128::from(field.value(field.pow(x, exponent))), power);
             match field.inverse(x) {
