@@ -146,9 +146,8 @@ fn derive_shifted(
     if layout.size() > MOST_ACCUMULATORS || layout.size() > pairs.saturating_mul(8) {
         return merged(layout, terms, &numbers, shifts, &steps, &mut meter);
     }
-    let words = length < 64 && length_of_factors < 64;
     // An exponent has 15 bits, a sum of at most 64 shifted copies six more, and there is the sign.
-    if words && length + length_of_factors + 22 < 128 {
+    if length + length_of_factors + 22 < 128 {
         let mut sums = vec![0i128; layout.size() as usize];
         for (shift, step) in shifts.iter().zip(&steps) {
             let number = word_of(&shift.number);
@@ -179,7 +178,7 @@ fn derive_shifted(
 }
 
 fn word_of(value: &Integer) -> i128 {
-    i128::from(value.to_i64().expect("the lengths were looked at"))
+    value.to_i128().expect("the lengths were looked at")
 }
 
 /// The same by merging the copies, for elements that are sparse in their box.

@@ -108,6 +108,14 @@ impl Integer {
         }
     }
 
+    /// The value as two words, if it fits.
+    pub fn to_i128(&self) -> Option<i128> {
+        match &self.0 {
+            Repr::Small(v) => Some(i128::from(*v)),
+            Repr::Large(v) => v.to_i128(),
+        }
+    }
+
     /// The residue in `0..modulus`.
     ///
     /// # Panics
@@ -420,6 +428,8 @@ mod tests {
                 prop_assert!(!r.is_negative() && r < b.abs());
                 prop_assert_eq!(&(&q * &b) + &r, a.clone());
             }
+            prop_assert_eq!(a.to_i64(), x.to_i64());
+            prop_assert_eq!(a.to_i128(), x.to_i128());
             prop_assert_eq!(a.residue(1_000_003), x.mod_u64(1_000_003));
             prop_assert_eq!(a.residue(u64::MAX - 58), x.mod_u64(u64::MAX - 58));
             prop_assert_eq!(a.to_string().parse::<Integer>().unwrap(), a.clone());

@@ -1,5 +1,6 @@
 //! Exact division.
 
+mod dense;
 mod heap;
 mod packed;
 #[cfg(test)]
@@ -13,6 +14,8 @@ use linform_scalar::{Control, Integer, Rational, Stop};
 
 /// The longest integers, in words, that are divided without a question to the control: some 20 ms.
 const MOST_WORDS: u64 = 1 << 14;
+/// The largest array of accumulators.
+const MOST_ACCUMULATORS: u64 = 1 << 22;
 
 impl Polynomial {
     /// The quotient, or nothing if `divisor` does not divide this (0 divides nothing, not even 0).
@@ -79,18 +82,46 @@ pub(crate) fn quotient(
     let Some(layout) = Layout::new(&top) else {
         return heap::quotient(dividend, divisor, &mut meter);
     };
-    let room = Layout::new(&most).map_or(u64::MAX, |room| room.size());
+    match choose(&layout, &most, dividend, divisor) {
+        Method::Packed => packed::quotient(&layout, &most, dividend, divisor, &mut meter),
+        Method::Dense => dense::quotient(&layout, &most, dividend, divisor, &mut meter),
+        Method::Heap => heap::numbered_quotient(&layout, &most, dividend, divisor, &mut meter),
+    }
+}
+
+enum Method {
+    Packed,
+    Dense,
+    Heap,
+}
+
+/// The cheapest method by estimated nanoseconds; the constants were fitted to the benches of this crate.
+fn choose(layout: &Layout, most: &Monomial, dividend: &[Term], divisor: &[Term]) -> Method {
+    let room = Layout::new(most).map_or(u64::MAX, |room| room.size());
+    // The quotient mostly has fewer terms than the dividend.
     let terms = room.min(dividend.len() as u64);
-    let bits = packed::slot_bits(dividend, divisor);
-    let words = layout.size().saturating_mul(bits) / 64 + 1;
     let pairs = terms.saturating_mul(divisor.len() as u64);
+    let bits = packed::slot_bits(dividend, divisor);
     let length = bits / 64 + 1;
-    let by_heap = pairs.saturating_mul(60 + length * length);
-    let by_packing = words.saturating_mul((6 * words.isqrt()).clamp(8, 600)) + layout.size() * 20;
-    if words <= MOST_WORDS && by_packing < by_heap {
-        packed::quotient(&layout, &most, dividend, divisor, &mut meter)
+    let words = layout.size().saturating_mul(bits) / 64 + 1;
+    let packed = if words > MOST_WORDS {
+        u64::MAX
     } else {
-        heap::numbered_quotient(&layout, &most, dividend, divisor, &mut meter)
+        words * (6 * words.isqrt()).clamp(8, 600) + layout.size() * 20
+    };
+    let dense = if layout.size() > MOST_ACCUMULATORS {
+        u64::MAX
+    } else {
+        let each = if length == 1 { 3 } else { 30 + length * length };
+        pairs.saturating_mul(each) + layout.size() * 5
+    };
+    let heap = pairs.saturating_mul(80 + length * length);
+    if packed < dense && packed < heap {
+        Method::Packed
+    } else if dense < heap {
+        Method::Dense
+    } else {
+        Method::Heap
     }
 }
 

@@ -28,6 +28,8 @@ fn all_quotients(a: &Polynomial, b: &Polynomial) -> Vec<Option<Vec<Term>>> {
     if let (Some(layout), Some(most)) = (Layout::new(&top), top.div(&b.degrees())) {
         let result = heap::numbered_quotient(&layout, &most, a.terms(), b.terms(), meter);
         results.push(result.unwrap());
+        let result = dense::quotient(&layout, &most, a.terms(), b.terms(), meter);
+        results.push(result.unwrap());
         if layout.size() < 10_000 {
             let result = packed::quotient(&layout, &most, a.terms(), b.terms(), meter);
             results.push(result.unwrap());

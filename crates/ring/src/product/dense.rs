@@ -26,14 +26,13 @@ pub(crate) fn collect<T>(
 }
 
 /// The coefficients as words, with their numbers; only for coefficients that are words.
-pub(crate) fn words(layout: &Layout, terms: &[Term]) -> Vec<(usize, i128)> {
+pub(crate) fn words(layout: &Layout, terms: &[Term]) -> Vec<(usize, i64)> {
     terms
         .iter()
         .map(|(monomial, coefficient)| {
-            let word = coefficient
-                .to_i64()
-                .expect("the choice looked at all lengths");
-            (layout.number(monomial) as usize, i128::from(word))
+            let word = coefficient.to_i64();
+            let word = word.expect("the choice looked at all lengths");
+            (layout.number(monomial) as usize, word)
         })
         .collect()
 }
@@ -45,18 +44,26 @@ pub(super) fn product_words(
     long: &[Term],
     meter: &mut Meter<'_>,
 ) -> Result<Vec<Term>, Stop> {
+    let square = short == long;
     let (short, long) = (words(layout, short), words(layout, long));
-    let mut accumulators = vec![0i128; layout.size() as usize];
-    for (start, a) in short {
-        for piece in long.chunks(1 << 12) {
+    let mut sums = vec![0i128; layout.size() as usize];
+    for (index, &(start, a)) in short.iter().enumerate() {
+        // The products of a square are formed once for each pair.
+        let from = if square { index + 1 } else { 0 };
+        for piece in long[from..].chunks(1 << 12) {
             meter.work(piece.len())?;
             for &(number, b) in piece {
-                // Both factors are words, so this is one machine product.
-                accumulators[start + number] += a * b;
+                sums[start + number] += i128::from(a) * i128::from(b);
             }
         }
     }
-    collect(layout, accumulators, |&sum| sum == 0, Integer::from, meter)
+    if square {
+        sums.iter_mut().for_each(|sum| *sum *= 2);
+        for &(number, a) in &short {
+            sums[2 * number] += i128::from(a) * i128::from(a);
+        }
+    }
+    collect(layout, sums, |&sum| sum == 0, Integer::from, meter)
 }
 
 /// For coefficients of any length.

@@ -13,7 +13,7 @@ use crate::polynomial::{Term, common_monomial};
 use crate::sum::merge;
 use crate::{Monomial, Polynomial};
 pub use choice::ProductMethod;
-pub(crate) use dense::collect as collect_accumulators;
+pub(crate) use dense::{collect as collect_accumulators, words};
 use linform_scalar::{Control, Integer, Stop};
 use std::borrow::Cow;
 
