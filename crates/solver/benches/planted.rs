@@ -78,11 +78,10 @@ fn planted(shape: &Planted) -> (System, Option<Vec<Fraction>>) {
             system.push(row);
             continue;
         }
-        let mut place = random.next_word() as usize;
-        for _ in 0..shape.filled {
+        let first_place = random.next_word() as usize % columns;
+        for place in first_place..first_place + shape.filled {
             row.entries
                 .push((place % columns, dense(&mut random, symbols, degree, bits)));
-            place += 1;
         }
         row.right = match &solution {
             None => dense(&mut random, symbols, degree, bits),

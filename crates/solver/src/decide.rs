@@ -22,7 +22,7 @@ use linform_scalar::{Control, Stop};
 ///
 /// E. H. Bareiss, Math. Comp. 22 (1968) 565–578.
 pub fn solve_fraction_free(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
-    decide(system, &|_| Method::FractionFree, control)
+    decide(system, &|_, _| Ok(Method::FractionFree), control)
 }
 
 /// Decides the system by images modulo primes at points, for its independent rows and columns.
@@ -37,13 +37,16 @@ pub fn solve_fraction_free(system: &System, control: &dyn Control) -> Result<Sol
 /// point (for each variable, the degrees of numerator and denominator together) one elimination of `r³/3` word
 /// operations.
 pub fn solve_modular(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
-    decide(system, &|_| Method::Modular, control)
+    decide(system, &|_, _| Ok(Method::Modular), control)
 }
+
+/// Names the method for a square system.
+pub(crate) type Choice = dyn Fn(&Square<'_>, &dyn Control) -> Result<Method, Stop>;
 
 /// Decides the system; `choose` names the method for a square system.
 pub(crate) fn decide(
     system: &System,
-    choose: &dyn Fn(&Square<'_>) -> Method,
+    choose: &Choice,
     control: &dyn Control,
 ) -> Result<Solved, Stop> {
     let mut attempt = 0;
@@ -78,14 +81,14 @@ fn solve_square(
 fn refute(
     system: &System,
     profile: &Profile,
-    choose: &dyn Fn(&Square<'_>) -> Method,
+    choose: &Choice,
     control: &dyn Control,
 ) -> Result<Option<Solved>, Stop> {
     let Some(contradiction) = &profile.contradiction else {
         return Ok(None);
     };
     let square = Square::of_contradiction(system, contradiction);
-    let method = choose(&square);
+    let method = choose(&square, control)?;
     let Some(weights) = solve_square(&square, method, control)?.and_then(|mut w| w.pop()) else {
         return Ok(None);
     };
@@ -104,14 +107,14 @@ fn refute(
 fn solve_profile(
     system: &System,
     profile: &Profile,
-    choose: &dyn Fn(&Square<'_>) -> Method,
+    choose: &Choice,
     control: &dyn Control,
 ) -> Result<Option<Solved>, Stop> {
     let free: Vec<usize> = (0..system.columns())
         .filter(|column| profile.columns.binary_search(column).is_err())
         .collect();
     let square = Square::of_profile(system, profile, &free);
-    let method = choose(&square);
+    let method = choose(&square, control)?;
     let Some(solutions) = solve_square(&square, method, control)? else {
         return Ok(None);
     };

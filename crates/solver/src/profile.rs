@@ -215,7 +215,10 @@ fn smallest_contradiction(
         matrix[i * width + rank + i] = field.one();
     }
     let regular = crate::modular::eliminate(field, &mut matrix, rank, rank);
-    debug_assert!(regular, "the rows and columns were found independent");
+    debug_assert!(
+        regular.is_some(),
+        "the rows and columns were found independent"
+    );
     let mut best: Option<((usize, usize), usize, Vec<usize>)> = None;
     for &row in contradicting {
         values.fill(row, &mut work);

@@ -65,6 +65,19 @@ impl<'a> Square<'a> {
         }
     }
 
+    /// Where the entries stand in the matrix `[S | B]`, row by row.
+    pub(crate) fn places(&self) -> Vec<usize> {
+        let width = self.size + self.rights;
+        self.entries.iter().map(|(i, j, _)| i * width + j).collect()
+    }
+
+    /// The degree of all entries in every symbol, as a monomial.
+    pub(crate) fn degrees(&self) -> Monomial {
+        self.entries
+            .iter()
+            .fold(Monomial::one(), |all, (_, _, p)| all.lcm(&p.degrees()))
+    }
+
     /// Do the quotients solve the system with the right side of this index? Multiplied out in every row.
     pub(crate) fn is_solved_by(
         &self,
@@ -74,11 +87,7 @@ impl<'a> Square<'a> {
     ) -> Result<bool, Stop> {
         let mut polynomials = candidate.numerators.clone();
         polynomials.push(-&candidate.denominator);
-        let degrees = self
-            .entries
-            .iter()
-            .fold(Monomial::one(), |all, (_, _, p)| all.lcm(&p.degrees()));
-        let mut vector = Vector::new(&polynomials, &degrees);
+        let mut vector = Vector::new(&polynomials, &self.degrees());
         let mut rows: Vec<Vec<(usize, &Polynomial)>> = vec![Vec::new(); self.size];
         for &(i, j, entry) in &self.entries {
             if j < self.size {

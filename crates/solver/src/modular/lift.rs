@@ -26,12 +26,7 @@ pub(crate) fn solve_square(
     control: &dyn Control,
 ) -> Result<Option<Vec<Quotients>>, Stop> {
     let polynomials: Vec<&Polynomial> = square.entries.iter().map(|entry| entry.2).collect();
-    let width = square.size + square.rights;
-    let places: Vec<usize> = square
-        .entries
-        .iter()
-        .map(|(i, j, _)| i * width + j)
-        .collect();
+    let places = square.places();
     let plan = Plan::new(&polynomials);
     let mut recovery = Recovery::new(square, &plan, &places);
     let most_primes = most_primes(square);
@@ -70,6 +65,32 @@ pub(crate) fn solve_square(
         }
     }
     Ok(None)
+}
+
+/// The number of coefficients of the solution, numerator and denominator together, and of the determinant, if
+/// all of them occurred up to the degree in each variable; nothing if the first prime is unlucky.
+///
+/// # Complexity
+///
+/// For each variable as many eliminations as there are coefficients in that variable.
+pub(crate) fn dense_sizes(
+    square: &Square<'_>,
+    control: &dyn Control,
+) -> Result<Option<(u64, u64)>, Stop> {
+    let polynomials: Vec<&Polynomial> = square.entries.iter().map(|entry| entry.2).collect();
+    let places = square.places();
+    let plan = Plan::new(&polynomials);
+    let mut recovery = Recovery::new(square, &plan, &places);
+    let (mut solution, mut determinant) = (1u64, 1u64);
+    for variable in 0..plan.symbols().len() {
+        let lengths = recovery.lengths_along(prime_field(0), variable, control)?;
+        let Some(lengths) = lengths else {
+            return Ok(None);
+        };
+        solution = solution.saturating_mul(lengths.solution as u64);
+        determinant = determinant.saturating_mul(lengths.determinant as u64);
+    }
+    Ok(Some((solution, determinant)))
 }
 
 fn solves(
@@ -160,7 +181,10 @@ fn assemble(
     denominator: &Integer,
     numerators: &[Integer],
 ) -> Result<Quotients, Stop> {
-    let number = |value: &Integer| vec![(Monomial::one(), value.clone())];
+    let number = |value: &Integer| match value.is_zero() {
+        true => Terms::new(),
+        false => vec![(Monomial::one(), value.clone())],
+    };
     let mut unit = number(denominator);
     let mut values: Vec<Terms> = numerators.iter().map(number).collect();
     for (stage, &symbol) in stages.iter().zip(symbols).rev() {

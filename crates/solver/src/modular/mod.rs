@@ -11,4 +11,4 @@ mod recover;
 mod univariate;
 
 pub(crate) use elimination::eliminate;
-pub(crate) use lift::solve_square;
+pub(crate) use lift::{dense_sizes, solve_square};

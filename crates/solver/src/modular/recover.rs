@@ -21,6 +21,13 @@ pub(super) struct Stage {
     pub(super) lengths: Vec<usize>,
 }
 
+impl Stage {
+    /// The number of coefficients of the longest numerator.
+    fn length(&self) -> usize {
+        self.lengths.iter().copied().max().unwrap_or(0)
+    }
+}
+
 /// One column of the solution as a vector of coefficients: rational functions over one denominator whose
 /// coefficient of the highest monomial (the last variable most significant) is 1. That makes it unique, so the
 /// vectors modulo different primes are residues of the same rationals.
@@ -29,6 +36,14 @@ pub(super) struct Image {
     /// One for each variable, variable 0 first.
     pub(super) stages: Vec<Stage>,
     pub(super) coefficients: Vec<u64>,
+}
+
+/// The sizes of a solution in one variable.
+pub(super) struct Lengths {
+    /// Coefficients of numerator and denominator of the solution, without the denominator's leading 1.
+    pub(super) solution: usize,
+    /// Coefficients of the determinant.
+    pub(super) determinant: usize,
 }
 
 /// More failures than this at one place are no accident: the prime divides the determinant, or the stages
@@ -85,6 +100,62 @@ impl<'a> Recovery<'a> {
         self.expected.fill(None);
     }
 
+    /// The number of coefficients that the solution and the determinant have in one variable, numerator and
+    /// denominator together, when the others are numbers; nothing if the prime is unlucky.
+    pub(super) fn lengths_along(
+        &mut self,
+        field: PrimeField,
+        variable: usize,
+        control: &dyn Control,
+    ) -> Result<Option<Lengths>, Stop> {
+        let mut prime = Prime {
+            field,
+            images: self.plan.images(field),
+        };
+        let variables = self.plan.symbols().len();
+        let others: Vec<u64> = (0..variables)
+            .map(|_| random_element(&mut self.random, &field))
+            .collect();
+        for k in (variable + 1..variables).rev() {
+            prime.images.substitute(k, others[k]);
+        }
+        let mut columns: Vec<Column> = (0..self.rights).map(|_| Column::new(&field)).collect();
+        let mut determinant = Interpolation::new(&field);
+        let mut determinant_is_known = false;
+        let mut failures = 0;
+        while !determinant_is_known || columns.iter().any(|column| column.done.is_none()) {
+            control.proceed()?;
+            let point = random_element(&mut self.random, &field);
+            if determinant.points().contains(&point) {
+                continue;
+            }
+            prime.images.substitute(variable, point);
+            for k in (0..variable).rev() {
+                prime.images.substitute(k, others[k]);
+            }
+            let Some(value) = self.eliminate_at_point(&prime) else {
+                failures += 1;
+                if failures > MOST_FAILURES {
+                    return Ok(None);
+                }
+                continue;
+            };
+            determinant_is_known |= determinant.add(&field, point, value);
+            for (column, image) in columns.iter_mut().zip(self.solution()) {
+                column.add(&field, point, image, None, &mut self.random);
+            }
+        }
+        let solution = columns
+            .iter()
+            .filter_map(|column| column.done.as_ref()?.stages.last())
+            .map(|stage| stage.denominator + stage.length())
+            .max();
+        Ok(Some(Lengths {
+            solution: solution.unwrap_or(0).max(1),
+            determinant: determinant.length(),
+        }))
+    }
+
     /// The images of all columns of the solution; nothing if the prime is unlucky.
     pub(super) fn images_modulo(
         &mut self,
@@ -107,7 +178,8 @@ impl<'a> Recovery<'a> {
     ) -> Result<Option<Vec<Image>>, Stop> {
         if variables == 0 {
             control.proceed()?;
-            return Ok(self.solution_at_point(prime));
+            let regular = self.eliminate_at_point(prime).is_some();
+            return Ok(regular.then(|| self.solution()));
         }
         let field = prime.field;
         let expected = self.expected[variables].clone();
@@ -132,6 +204,10 @@ impl<'a> Recovery<'a> {
             for (index, (column, image)) in columns.iter_mut().zip(inner).enumerate() {
                 let stage = expected.as_ref().map(|all| &all[index][variables - 1]);
                 column.add(&field, point, image, stage, &mut self.random);
+                let size = column.samples.len() * column.weights.len();
+                if size > control.term_limit() {
+                    return Err(Stop::SizeLimit);
+                }
             }
         }
         let images: Vec<Image> = columns.into_iter().filter_map(|c| c.done).collect();
@@ -144,14 +220,17 @@ impl<'a> Recovery<'a> {
         Ok(Some(images))
     }
 
-    fn solution_at_point(&mut self, prime: &Prime<'_>) -> Option<Vec<Image>> {
+    /// Solves the system at the point where all variables stand; the determinant, if it is not 0.
+    fn eliminate_at_point(&mut self, prime: &Prime<'_>) -> Option<u64> {
         self.matrix.fill(0);
         for (&place, &value) in self.places.iter().zip(prime.images.values()) {
             self.matrix[place] = value;
         }
-        if !eliminate(&prime.field, &mut self.matrix, self.size, self.rights) {
-            return None;
-        }
+        eliminate(&prime.field, &mut self.matrix, self.size, self.rights)
+    }
+
+    /// The columns of the solution that were found last.
+    fn solution(&self) -> Vec<Image> {
         let width = self.size + self.rights;
         let column = |right: usize| Image {
             stages: Vec::new(),
@@ -159,7 +238,7 @@ impl<'a> Recovery<'a> {
                 .map(|row| self.matrix[row * width + self.size + right])
                 .collect(),
         };
-        Some((0..self.rights).map(column).collect())
+        (0..self.rights).map(column).collect()
     }
 }
 
@@ -196,55 +275,60 @@ impl Column {
                 .map(|_| random_element(random, field))
                 .collect();
         }
-        // One random combination stands for the whole vector: its denominator is the common one.
-        let combination = self
-            .weights
-            .iter()
-            .zip(&image.coefficients)
-            .fold(0, |sum, (&w, &c)| field.add(sum, field.mul(w, c)));
-        let predicted = self.interpolation.add(field, point, combination);
-        self.samples.push(image.coefficients);
-        let n = self.samples.len();
+        let n = self.samples.len() + 1;
         let shape = match expected {
+            // Polynomials of known length need no Euclidean algorithm.
+            Some(stage) if stage.denominator == 0 => {
+                self.interpolation.add_point(field, point);
+                (n >= stage.length().max(1)).then(|| Shape {
+                    denominator: vec![field.one()],
+                    numerator_length: stage.length(),
+                })
+            }
             Some(stage) => {
-                let length = stage.lengths.iter().copied().max().unwrap_or(0);
-                if n < (length + stage.denominator).max(1) {
-                    return;
+                self.add_combination(field, point, &image.coefficients);
+                let enough = n >= stage.length() + stage.denominator;
+                let fraction = || self.interpolation.fraction_of_length(field, stage.length());
+                enough.then(fraction).flatten()
+            }
+            None => {
+                let predicted = self.add_combination(field, point, &image.coefficients);
+                if predicted && n >= 2 || n >= self.next_trial {
+                    self.next_trial = n + 1 + n / 8;
+                    self.interpolation.fraction(field)
+                } else {
+                    None
                 }
-                self.interpolation.fraction_of_length(field, length)
             }
-            None if predicted && n >= 2 || n >= self.next_trial => {
-                self.next_trial = n + 1 + n / 8;
-                self.interpolation.fraction(field)
-            }
-            None => None,
         };
+        self.samples.push(image.coefficients);
         if let Some(shape) = shape {
             self.done = self.finish(field, &shape);
         }
     }
 
+    /// Adds one random combination, which stands for the whole vector: its denominator is the common one. Was
+    /// it predicted?
+    fn add_combination(&mut self, field: &PrimeField, point: u64, vector: &[u64]) -> bool {
+        let combination = self
+            .weights
+            .iter()
+            .zip(vector)
+            .fold(0, |sum, (&w, &c)| field.add(sum, field.mul(w, c)));
+        self.interpolation.add(field, point, combination)
+    }
+
     /// The coefficients of the whole vector over the denominator of the combination; nothing if they do not
     /// fit it, because the combination was a coincidence.
     fn finish(&self, field: &PrimeField, shape: &Shape) -> Option<Image> {
-        let matrix = self
-            .interpolation
-            .to_coefficients(field, &shape.denominator);
-        let size = self.weights.len();
-        let mut numerators: Vec<Vec<u64>> = Vec::with_capacity(shape.numerator_length);
-        for (degree, row) in matrix.iter().enumerate() {
-            let mut coefficients = vec![0; size];
-            for (&factor, sample) in row.iter().zip(&self.samples) {
-                for (sum, &value) in coefficients.iter_mut().zip(sample) {
-                    *sum = field.add(*sum, field.mul(factor, value));
-                }
-            }
-            if degree < shape.numerator_length {
-                numerators.push(coefficients);
-            } else if coefficients.iter().any(|&c| c != 0) {
-                return None;
-            }
+        let mut numerators =
+            self.interpolation
+                .numerators(field, &shape.denominator, &self.samples);
+        let excess = numerators.split_off(shape.numerator_length.min(numerators.len()));
+        if excess.iter().flatten().any(|&coefficient| coefficient != 0) {
+            return None;
         }
+        let size = self.weights.len();
         let degree = shape.denominator.len() - 1;
         let mut coefficients = shape.denominator[..degree].to_vec();
         let mut lengths = Vec::with_capacity(size);

@@ -30,8 +30,14 @@ impl Interpolation {
         }
     }
 
+    /// The points, in the order in which they came.
     pub(super) fn points(&self) -> &[u64] {
         &self.points
+    }
+
+    /// One more than the degree of the polynomial.
+    pub(super) fn length(&self) -> usize {
+        self.polynomial.len()
     }
 
     /// Adds a point that is not in the list. Did the polynomial have that value before?
@@ -48,13 +54,18 @@ impl Interpolation {
                 *coefficient = field.add(*coefficient, field.mul(factor, other));
             }
         }
+        self.add_point(field, point);
+        difference == 0
+    }
+
+    /// Adds a point that is not in the list without a value: the polynomial is not to be used any more.
+    pub(super) fn add_point(&mut self, field: &PrimeField, point: u64) {
         self.product.push(0);
         for i in (0..self.product.len()).rev() {
             let shifted = if i == 0 { 0 } else { self.product[i - 1] };
             self.product[i] = field.sub_product(shifted, point, self.product[i]);
         }
         self.points.push(point);
-        difference == 0
     }
 
     /// The fraction with these values whose degrees are the smallest, if one value at least is not needed to
@@ -105,28 +116,48 @@ impl Interpolation {
         }
     }
 
-    /// The matrix that takes values of fractions with this denominator to the coefficients of their
-    /// numerators: row `j` times the values is the coefficient of `x^j`.
-    pub(super) fn to_coefficients(&self, field: &PrimeField, denominator: &[u64]) -> Vec<Vec<u64>> {
+    /// The coefficients of the numerators of a vector of fractions with this denominator, from the vectors at
+    /// the points: entry `j` of the result holds the coefficients of `x^j`.
+    pub(super) fn numerators(
+        &self,
+        field: &PrimeField,
+        denominator: &[u64],
+        samples: &[Vec<u64>],
+    ) -> Vec<Vec<u64>> {
         let size = self.points.len();
-        let mut matrix = vec![vec![0; size]; size];
+        let width = samples.first().map_or(0, Vec::len);
+        let mut numerators = vec![vec![0; width]; size];
         let mut quotient = vec![0; size];
-        for (k, &point) in self.points.iter().enumerate() {
-            // Lagrange's basis polynomial is the product without this factor, divided by its value here.
+        let mut scaled = vec![0; width];
+        // Lagrange's basis polynomials are the product without one factor, divided by its value at that point,
+        // which is the derivative of the product.
+        let derivative: Vec<u64> = (1..=size)
+            .map(|j| field.mul(field.element(j as u64), self.product[j]))
+            .collect();
+        let mut factors: Vec<u64> = self
+            .points
+            .iter()
+            .map(|&point| evaluate(field, &derivative, point))
+            .collect();
+        let distinct = field.invert_all(&mut factors);
+        debug_assert!(distinct, "the points are distinct");
+        for ((&point, sample), &factor) in self.points.iter().zip(samples).zip(&factors) {
             let mut carry = 0;
             for j in (0..size).rev() {
                 carry = field.add(self.product[j + 1], field.mul(carry, point));
                 quotient[j] = carry;
             }
-            let inverse = field
-                .inverse(evaluate(field, &quotient, point))
-                .expect("the points are distinct");
-            let factor = field.mul(inverse, evaluate(field, denominator, point));
-            for (row, &coefficient) in matrix.iter_mut().zip(&quotient) {
-                row[k] = field.mul(coefficient, factor);
+            let factor = field.mul(factor, evaluate(field, denominator, point));
+            for (value, &own) in scaled.iter_mut().zip(sample) {
+                *value = field.mul(factor, own);
+            }
+            for (coefficients, &factor) in numerators.iter_mut().zip(&quotient) {
+                for (sum, &value) in coefficients.iter_mut().zip(&scaled) {
+                    *sum = field.add(*sum, field.mul(factor, value));
+                }
             }
         }
-        matrix
+        numerators
     }
 }
 
@@ -199,15 +230,10 @@ mod tests {
             let shape = interpolation.fraction(&field).unwrap();
             assert_eq!(shape.denominator, denominator);
             assert_eq!(shape.numerator_length, length);
-            let matrix = interpolation.to_coefficients(&field, &denominator);
-            let mut coefficients: Vec<u64> = matrix
-                .iter()
-                .map(|row| {
-                    row.iter()
-                        .zip(&values)
-                        .fold(0, |sum, (&a, &b)| field.add(sum, field.mul(a, b)))
-                })
-                .collect();
+            let samples: Vec<Vec<u64>> = values.iter().map(|&value| vec![value]).collect();
+            let mut coefficients: Vec<u64> = interpolation
+                .numerators(&field, &denominator, &samples)
+                .concat();
             assert!(coefficients.split_off(length).iter().all(|&c| c == 0));
             assert_eq!(coefficients, numerator);
         }
