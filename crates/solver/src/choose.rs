@@ -26,8 +26,8 @@ pub fn solve(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
 ///
 /// With several symbols the modular method takes a time proportional to the number of unknowns and of their
 /// coefficients, also of those that are 0; elimination takes one that grows with the number of terms of the
-/// determinant and the square of the number of entries, `terms·entries²/size`. Measured on 147 planted systems of
-/// size 3 to 12 in one to four symbols, with two or six entries in a row and sparse solutions of degree 2 to 30, this
+/// determinant and the square of the number of entries, `terms·entries²/size`. Measured on 100 planted systems of
+/// size 3 to 12 in two to four symbols, with two or six entries in a row and sparse solutions of degree 2 to 30, this
 /// comparison names the quicker method except where the two are within a factor of 5.
 fn recommended(square: &Square<'_>, control: &dyn Control) -> Result<Method, Stop> {
     let degrees = square.degrees();

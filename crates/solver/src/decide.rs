@@ -5,7 +5,7 @@ use crate::residual::Vector;
 use crate::square::{Quotients, Square};
 use crate::{Fraction, Independence, Method, Outcome, Solved, System};
 use crate::{bareiss, certificate, modular, verify};
-use linform_ring::Polynomial;
+use linform_ring::{Monomial, Polynomial};
 use linform_scalar::{Control, Stop};
 
 /// Decides the system by fraction-free elimination of its independent rows and columns.
@@ -122,8 +122,13 @@ fn solve_profile(
     let Some(particular) = solutions.next() else {
         return Ok(None);
     };
+    let outside = Outside {
+        system,
+        profile,
+        degrees: system.degrees(),
+    };
     let particular = spread(system, profile, particular);
-    if !holds_outside(system, profile, &particular, true, control)? {
+    if !outside.satisfied_by(&particular, true, control)? {
         return Ok(None);
     }
     let mut kernel = Vec::with_capacity(free.len());
@@ -138,7 +143,7 @@ fn solve_profile(
             denominator: Polynomial::one(),
             ..vector
         };
-        if !holds_outside(system, profile, &vector, false, control)? {
+        if !outside.satisfied_by(&vector, false, control)? {
             return Ok(None);
         }
         kernel.push(vector.numerators.into_iter().map(Fraction::from).collect());
@@ -169,26 +174,34 @@ fn spread(system: &System, profile: &Profile, solution: Quotients) -> Quotients 
     }
 }
 
-/// Do the quotients satisfy the rows that did not lead to them?
-fn holds_outside(
-    system: &System,
-    profile: &Profile,
-    candidate: &Quotients,
-    with_right: bool,
-    control: &dyn Control,
-) -> Result<bool, Stop> {
-    let mut polynomials = candidate.numerators.clone();
-    polynomials.push(-&candidate.denominator);
-    let mut vector = Vector::new(&polynomials, &system.degrees());
-    for (index, row) in system.rows().iter().enumerate() {
-        if profile.rows.binary_search(&index).is_ok() {
-            continue;
+/// The rows that did not lead to the solution.
+struct Outside<'a> {
+    system: &'a System,
+    profile: &'a Profile,
+    degrees: Monomial,
+}
+
+impl Outside<'_> {
+    /// Do the quotients satisfy these rows, with the system's right sides or with 0?
+    fn satisfied_by(
+        &self,
+        candidate: &Quotients,
+        with_right: bool,
+        control: &dyn Control,
+    ) -> Result<bool, Stop> {
+        let mut polynomials = candidate.numerators.clone();
+        polynomials.push(-&candidate.denominator);
+        let mut vector = Vector::new(&polynomials, &self.degrees);
+        for (index, row) in self.system.rows().iter().enumerate() {
+            if self.profile.rows.binary_search(&index).is_ok() {
+                continue;
+            }
+            let entries = row.entries.iter().map(|(column, entry)| (*column, entry));
+            let right = with_right.then_some((self.system.columns(), &row.right));
+            if !vector.is_orthogonal_to(entries.chain(right), control)? {
+                return Ok(false);
+            }
         }
-        let entries = row.entries.iter().map(|(column, entry)| (*column, entry));
-        let right = with_right.then_some((system.columns(), &row.right));
-        if !vector.is_orthogonal_to(entries.chain(right), control)? {
-            return Ok(false);
-        }
+        Ok(true)
     }
-    Ok(true)
 }

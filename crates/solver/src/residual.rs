@@ -35,8 +35,41 @@ struct Cells<'a> {
     strides: Vec<(usize, usize)>,
     /// The place of every term of every polynomial.
     terms: Vec<Vec<(usize, &'a Integer)>>,
-    sums: Vec<Integer>,
+    sums: Vec<Sum>,
+    /// The cells that are not 0, and some that are.
     touched: Vec<usize>,
+}
+
+/// The sum of both parts. Most products fit two words, and these are added without allocation.
+#[derive(Clone, Default)]
+struct Sum {
+    short: i128,
+    long: Integer,
+}
+
+impl Sum {
+    fn add_product(&mut self, a: &Integer, b: &Integer) {
+        let (Some(x), Some(y)) = (a.to_i64(), b.to_i64()) else {
+            self.long.add_product(a, b);
+            return;
+        };
+        let product = i128::from(x) * i128::from(y);
+        match self.short.checked_add(product) {
+            Some(sum) => self.short = sum,
+            None => {
+                self.long += Integer::from(self.short);
+                self.short = product;
+            }
+        }
+    }
+
+    fn is_zero(&self) -> bool {
+        if self.long.is_zero() {
+            self.short == 0
+        } else {
+            (&self.long + &Integer::from(self.short)).is_zero()
+        }
+    }
 }
 
 impl<'a> Vector<'a> {
@@ -93,7 +126,7 @@ impl<'a> Cells<'a> {
         Some(Cells {
             strides,
             terms,
-            sums: vec![Integer::ZERO; size],
+            sums: vec![Sum::default(); size],
             touched: Vec::new(),
         })
     }
@@ -120,7 +153,7 @@ impl<'a> Cells<'a> {
         }
         let vanishes = self.touched.iter().all(|&cell| self.sums[cell].is_zero());
         for cell in self.touched.drain(..) {
-            self.sums[cell] = Integer::ZERO;
+            self.sums[cell] = Sum::default();
         }
         Ok(vanishes)
     }
@@ -171,6 +204,26 @@ mod tests {
         let row = read(&["7 - t^2*a", "t + a + 1", "5*t"]);
         assert_eq!(orthogonal(&vector, &row), (false, false));
         assert_eq!(orthogonal(&[], &[]), (true, true));
+    }
+
+    #[test]
+    fn sums_beyond_two_words_are_exact() {
+        let extreme = [i64::MIN, i64::MAX, i64::MIN + 1].map(Integer::from);
+        let huge = Integer::from(3).pow(100);
+        let mut sum = Sum::default();
+        let mut expected = Integer::ZERO;
+        let mut factors: Vec<(&Integer, &Integer)> = Vec::new();
+        for a in &extreme {
+            factors.extend(extreme.iter().chain([&huge]).map(|b| (a, b)));
+        }
+        for (a, b) in factors.repeat(4) {
+            sum.add_product(a, b);
+            expected.add_product(a, b);
+            assert_eq!(&sum.long + &Integer::from(sum.short), expected);
+            assert_eq!(sum.is_zero(), expected.is_zero());
+        }
+        sum.add_product(&Integer::from(-1), &expected);
+        assert!(sum.is_zero() && !sum.long.is_zero());
     }
 
     #[test]
