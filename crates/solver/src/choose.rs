@@ -16,7 +16,29 @@ use linform_scalar::{Control, Stop};
 ///
 /// # Complexity
 ///
-/// That of the method, and for systems in several symbols a trial of both along one line for each symbol.
+/// That of the method, and for systems in several symbols the images along one line for each symbol.
+///
+/// # Examples
+///
+/// ```
+/// use linform_ring::Symbols;
+/// use linform_scalar::Unlimited;
+/// use linform_solver::{Outcome, Row, System, check_independence, solve, verify};
+///
+/// let symbols = Symbols::new(vec![], Some("t".into()), vec![]);
+/// let read = |text: &str| symbols.parse(text).unwrap();
+/// // x + t·y = 2t², t·x = t³, x − y = t² − t
+/// let mut system = System::new(2);
+/// for (x, y, right) in [("1", "t", "2*t^2"), ("t", "0", "t^3"), ("1", "-1", "t^2 - t")] {
+///     let entries = vec![(0, read(x)), (1, read(y))];
+///     system.push(Row { entries, right: read(right) });
+/// }
+/// let solved = solve(&system, &Unlimited)?;
+/// assert_eq!(solved.outcome, Outcome::Unique(vec![read("t^2").into(), read("t").into()]));
+/// assert_eq!(verify(&system, &solved.outcome, &Unlimited)?, Ok(()));
+/// assert!(check_independence(&system, &solved.independence.unwrap()));
+/// # Ok::<(), linform_scalar::Stop>(())
+/// ```
 pub fn solve(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
     decide(system, &recommended, control)
 }
