@@ -84,6 +84,20 @@ fn short_univariate_product_by(bencher: Bencher<'_, '_>, method: &ProductMethod)
     bencher.bench_local(|| a.mul_with(*method, &b, &Unlimited).unwrap());
 }
 
+/// What there is to do besides the arithmetic.
+#[divan::bench(args = [1, 3])]
+fn tiny_univariate_product(bencher: Bencher<'_, '_>, degree: u16) {
+    let p = |start: i64| {
+        Polynomial::from_terms((0..=degree).map(|e| {
+            (
+                Monomial::power(0, e).unwrap(),
+                Rational::from(start + i64::from(e)),
+            )
+        }))
+    };
+    bench_product(bencher, &p(3), &p(-9));
+}
+
 /// Degree and bits of the coefficients.
 #[divan::bench(args = [(8, 64), (20, 128), (50, 320), (100, 640), (1000, 640)])]
 fn univariate_product(bencher: Bencher<'_, '_>, (degree, bits): (u16, u32)) {

@@ -263,6 +263,8 @@ mod tests {
     }
 
     proptest! {
+        #![proptest_config(crate::testing::cases(96))]
+
         #[test]
         fn every_way_gives_the_derivative(element in elements()) {
             let ring = ring();

@@ -62,6 +62,21 @@ impl Ring {
     /// gradings over ℤ, the torsion of the quotient by their lattice those modulo a number. The basis over ℤ is in Hermite
     /// form, derivation first; modulo a prime power one weight that is a unit is scaled to 1, the
     /// derivation's if possible.
+    ///
+    /// # Examples
+    ///
+    /// ```
+    /// use linform_ring::{Ring, Symbols};
+    ///
+    /// let symbols = Symbols::new(vec!["P".into(), "P'".into()], None, vec!["g2".into(), "g3".into()]);
+    /// let rules = vec![symbols.parse("P'")?, symbols.parse("6*P^2 - g2/2")?];
+    /// let ring = Ring::new(symbols, rules)?;
+    /// let relation = ring.symbols().parse("P'^2 - 4*P^3 + g2*P + g3")?;
+    /// let gradings = ring.gradings(&[relation]);
+    /// assert_eq!(gradings.len(), 1);
+    /// assert_eq!(gradings[0].weights, [2, 3, 4, 6].map(|w: i64| w.into()));
+    /// # Ok::<(), Box<dyn std::error::Error>>(())
+    /// ```
     pub fn gradings(&self, homogeneous: &[Polynomial]) -> Vec<Grading> {
         let symbols = self.symbols().len();
         let mut conditions = Lattice::new();

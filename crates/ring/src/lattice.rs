@@ -205,6 +205,8 @@ mod tests {
     }
 
     proptest! {
+        #![proptest_config(crate::testing::cases(96))]
+
         #[test]
         fn kernel_vectors_solve_the_system((columns, rows) in matrices()) {
             let rows = integers(&rows);

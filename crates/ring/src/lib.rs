@@ -22,6 +22,8 @@ mod ring;
 mod split;
 mod sum;
 mod symbols;
+#[cfg(test)]
+mod testing;
 
 pub use grading::Grading;
 pub use monomial::Monomial;

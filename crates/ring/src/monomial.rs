@@ -238,6 +238,8 @@ mod tests {
     }
 
     proptest! {
+        #![proptest_config(crate::testing::cases(256))]
+
         #[test]
         fn packed_operations_agree_with_lists_of_exponents(a in exponents(), b in exponents(), k in 0usize..12) {
             let (x, y) = (Monomial::from_exponents(&a).unwrap(), Monomial::from_exponents(&b).unwrap());

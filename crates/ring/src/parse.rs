@@ -106,6 +106,18 @@ impl Symbols {
     ///
     /// What is wrong and at which byte. Bounded are the text (64 MiB), the nesting (100), the digits of a
     /// number (100 000), exponents, and the size of products and powers.
+    ///
+    /// # Examples
+    ///
+    /// ```
+    /// use linform_ring::Symbols;
+    ///
+    /// let symbols = Symbols::new(vec![], Some("t".into()), vec![]);
+    /// let p = symbols.parse("(3*t^2 - 2)/10")?;
+    /// assert_eq!(symbols.format(&p), "3/10*t^2 - 1/5");
+    /// assert!(symbols.parse("1/t").is_err());
+    /// # Ok::<(), linform_ring::ParseError>(())
+    /// ```
     pub fn parse(&self, text: &str) -> Result<Polynomial, ParseError> {
         let mut reader = Reader {
             symbols: self,

@@ -57,6 +57,22 @@ impl Ring {
     ///
     /// If the numbers of generators and derivatives differ, a derivative holds a symbol beyond the last, or two
     /// symbols share a name.
+    ///
+    /// # Examples
+    ///
+    /// ```
+    /// use linform_ring::{Ring, Symbols};
+    /// use linform_scalar::Unlimited;
+    ///
+    /// // Painlevé II and the logarithmic derivative of the Tracy–Widom law.
+    /// let symbols = Symbols::new(vec!["q".into(), "q'".into()], Some("t".into()), vec![]);
+    /// let rules = vec![symbols.parse("q'")?, symbols.parse("t*q + 2*q^3")?];
+    /// let ring = Ring::new(symbols, rules)?;
+    /// let law = ring.symbols().parse("q'^2 - t*q^2 - q^4")?;
+    /// let derivative = ring.derive(&law, &Unlimited)?;
+    /// assert_eq!(ring.symbols().format(&derivative), "-q^2");
+    /// # Ok::<(), Box<dyn std::error::Error>>(())
+    /// ```
     pub fn new(symbols: Symbols, derivatives: Vec<Polynomial>) -> Result<Ring, RingError> {
         if derivatives.len() != symbols.generators() {
             return Err(RingError(RingErrorKind::Count {

@@ -39,7 +39,7 @@ fn all_quotients(a: &Polynomial, b: &Polynomial) -> Vec<Option<Vec<Term>>> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(64))]
+    #![proptest_config(crate::testing::cases(64))]
 
     #[test]
     fn a_product_divided_by_a_factor_is_the_other_factor(a in polynomials(), b in polynomials()) {

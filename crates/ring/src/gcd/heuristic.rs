@@ -6,8 +6,8 @@ use crate::product::kronecker::{pack, unpack};
 use crate::{Monomial, Polynomial};
 use linform_scalar::{Control, Stop};
 
-/// The longest integers whose gcd is taken, in words: some ten milliseconds.
-const MOST_WORDS: u64 = 1 << 13;
+/// The longest integers whose gcd is taken, in words; beyond, images modulo primes were measured to be faster.
+const MOST_WORDS: u64 = 1 << 9;
 const ATTEMPTS: u64 = 6;
 
 /// The gcd of two primitive polynomials, or nothing if no attempt succeeded (B. W. Char, K. O. Geddes & G. H.

@@ -25,6 +25,19 @@ impl Polynomial {
     /// divisions. Where such integers would be too long: that of univariate gcds modulo primes, at as many points
     /// as the gcd has monomials in its box without the first symbol. Where the box is beyond a word: that of a
     /// subresultant remainder sequence.
+    ///
+    /// # Examples
+    ///
+    /// ```
+    /// use linform_ring::Symbols;
+    /// use linform_scalar::Unlimited;
+    ///
+    /// let symbols = Symbols::new(vec!["x".into(), "y".into()], None, vec![]);
+    /// let a = symbols.parse("1/2*x^2 - 1/2*y^2")?;
+    /// let b = symbols.parse("-3*x^2 - 6*x*y - 3*y^2")?;
+    /// assert_eq!(symbols.format(&a.gcd(&b, &Unlimited)?), "x + y");
+    /// # Ok::<(), Box<dyn std::error::Error>>(())
+    /// ```
     pub fn gcd(&self, other: &Polynomial, control: &dyn Control) -> Result<Polynomial, Stop> {
         if self.is_zero() {
             return Ok(other.primitive_part());

@@ -4,9 +4,6 @@ use super::univariate::{self, Univariate};
 use crate::{Monomial, Polynomial};
 use linform_scalar::{Control, PrimeField, SplitMix, Stop};
 
-/// The Mersenne prime 2^61 − 1; a bound from any prime is a bound.
-const PRIME: u64 = (1 << 61) - 1;
-
 /// A monomial that every monomial of the gcd divides.
 ///
 /// For each symbol, the others are replaced by random residues. The image of the gcd divides the gcd of the
@@ -19,7 +16,8 @@ pub(super) fn degree_bounds(
 ) -> Result<Monomial, Stop> {
     let smaller = a.degrees().gcd(&b.degrees());
     let width = a.degrees().width().max(b.degrees().width());
-    let Some(field) = PrimeField::new(PRIME) else {
+    // A bound from any prime is a bound.
+    let Some(field) = super::modular::fields().next() else {
         return Ok(smaller);
     };
     let mut random = SplitMix::new(2);

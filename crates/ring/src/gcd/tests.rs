@@ -22,7 +22,7 @@ fn divides(a: &Polynomial, b: &Polynomial) -> bool {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(64))]
+    #![proptest_config(crate::testing::cases(64))]
 
     #[test]
     fn a_planted_common_divisor_divides_the_gcd(a in polynomials(6, 3), b in polynomials(6, 3), common in polynomials(5, 3)) {

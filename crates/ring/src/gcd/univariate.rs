@@ -79,7 +79,7 @@ mod tests {
     use proptest::prelude::*;
 
     proptest! {
-        #![proptest_config(ProptestConfig::with_cases(64))]
+        #![proptest_config(crate::testing::cases(64))]
 
         #[test]
         fn planted_gcds_are_found(a in proptest::collection::vec(0u64..7, 0..6), b in proptest::collection::vec(0u64..7, 0..6), c in proptest::collection::vec(0u64..7, 1..5)) {

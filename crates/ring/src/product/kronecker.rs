@@ -149,6 +149,8 @@ mod tests {
     use proptest::prelude::*;
 
     proptest! {
+        #![proptest_config(crate::testing::cases(96))]
+
         #[test]
         fn unpacking_inverts_packing(bits in 2u64..140, seeds in proptest::collection::vec((0u32..40, any::<i128>()), 0..8)) {
             let layout = Layout::new(&Monomial::from_exponents(&[39]).unwrap()).unwrap();

@@ -31,7 +31,7 @@ fn written_out(a: &Polynomial, b: &Polynomial) -> Polynomial {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(96))]
+    #![proptest_config(crate::testing::cases(96))]
 
     #[test]
     fn every_method_gives_the_product(a in polynomials(), b in polynomials()) {

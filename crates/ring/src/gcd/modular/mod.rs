@@ -9,6 +9,23 @@ use brown::Image;
 use linform_scalar::{
     ChineseRemainder, Control, Integer, PrimeField, SplitMix, Stop, primes_below,
 };
+use std::sync::OnceLock;
+
+/// The fields of the largest primes; the first of them are found once for all, for finding one takes as long as a
+/// small gcd.
+pub(super) fn fields() -> impl Iterator<Item = PrimeField> {
+    static FIRST: OnceLock<Vec<PrimeField>> = OnceLock::new();
+    let found = || {
+        primes_below(1 << 62)
+            .filter_map(PrimeField::new)
+            .take(24)
+            .collect()
+    };
+    let first: &[PrimeField] = FIRST.get_or_init(found);
+    let bound = first.last().map_or(1 << 62, PrimeField::prime);
+    let others = primes_below(bound).filter_map(PrimeField::new);
+    first.iter().copied().chain(others)
+}
 
 /// Primes whose images may be useless before the attempt is given up.
 const PATIENCE: usize = 8;
@@ -46,14 +63,12 @@ pub(super) fn gcd(
     let mut random = SplitMix::new(1);
     let mut found = Images::default();
     let (mut previous, mut useless) = (None, 0);
-    for prime in primes_below(1 << 62) {
+    for field in fields() {
         control.proceed()?;
-        let Some(field) = PrimeField::new(prime) else {
-            continue;
-        };
         if useless > PATIENCE {
             break;
         }
+        let prime = field.prime();
         useless += 1;
         if lead_a.residue(prime) == 0 || lead_b.residue(prime) == 0 {
             continue;
