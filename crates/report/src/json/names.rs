@@ -14,14 +14,18 @@ pub(crate) struct Names {
     names: Arc<[String]>,
     /// Exponents are stored densely, so a hostile file could ask for far more memory than its own length.
     budget: Cell<usize>,
+    /// Reading a number takes time that grows with the square of its digits.
+    work: Cell<u64>,
 }
 
 /// Bytes that all coefficients of one file may take, as estimated from their terms.
 const BUDGET: usize = 1 << 30;
 /// What a term takes beside its exponents: two numbers, and its place in a map.
 const TERM: usize = 200;
-/// Most digits of one integer: reading it takes time that grows with their square.
+/// Most digits of one integer.
 const MOST_DIGITS: usize = 100_000;
+/// The sum of the squares of the digits of all numbers: some seconds of reading.
+const WORK: u64 = 100_000_000_000;
 /// Most names that are gathered from coefficients.
 const MOST_NAMES: usize = 64;
 
@@ -56,6 +60,7 @@ impl Names {
         Names {
             names: names.into(),
             budget: Cell::new(BUDGET),
+            work: Cell::new(WORK),
         }
     }
 
@@ -89,12 +94,14 @@ impl Names {
         let left = self.budget.get().checked_sub(cost);
         self.budget
             .set(left.ok_or("all coefficients together have too many terms")?);
-        let digits = text
-            .split(|c: char| !c.is_ascii_digit())
-            .map(str::len)
-            .max();
-        if digits.is_some_and(|digits| digits > MOST_DIGITS) {
-            return Err(format!("a number with more than {MOST_DIGITS} digits"));
+        for digits in text.split(|c: char| !c.is_ascii_digit()).map(str::len) {
+            if digits > MOST_DIGITS {
+                return Err(format!("a number with more than {MOST_DIGITS} digits"));
+            }
+            let work = (digits as u64).pow(2);
+            let left = self.work.get().checked_sub(work);
+            self.work
+                .set(left.ok_or("all numbers together have too many digits")?);
         }
         if text.trim().is_empty() {
             return Err("the coefficient is empty".to_owned());

@@ -59,7 +59,9 @@ impl Node {
 }
 
 /// Most values that one file may hold; together with the limit on its length this bounds the memory of a tree.
-const MOST_NODES: usize = 16_000_000;
+const MOST_NODES: usize = 8_000_000;
+/// Most fields of one object: more than any ring has symbols.
+const MOST_FIELDS: usize = 10_000;
 
 /// Reads a text; nesting is bounded by the JSON library.
 pub(crate) fn parse(text: &str) -> Result<Node, serde_json::Error> {
@@ -135,6 +137,11 @@ impl<'de> Visitor<'de> for Reader<'_> {
         while let Some(name) = entries.next_key::<String>()? {
             if !seen.insert(name.clone()) {
                 return Err(A::Error::custom(format!("the field {name:?} stands twice")));
+            }
+            if seen.len() > MOST_FIELDS {
+                return Err(A::Error::custom(format!(
+                    "an object with more than {MOST_FIELDS} fields"
+                )));
             }
             fields.push((name, entries.next_value_seed(self)?));
         }

@@ -23,7 +23,8 @@ pub struct Read {
     /// Whether the file is as it was written.
     pub digest: Digest,
     /// The paths of the fields that the file lacks and that a check needs, such as `spec.sources`. In the record, texts
-    /// among them are empty, lists have no entries, and words have the value that a spec without them means.
+    /// among them are empty, lists have no entries, and words have the value that a spec without them means. At most 1000
+    /// paths are listed.
     pub missing: Vec<String>,
     /// What was read otherwise than it stands: unknown fields, kinds of evidence that this version does not check.
     pub notes: Vec<String>,
@@ -108,6 +109,15 @@ fn not_json(error: serde_json::Error) -> ReadError {
     )
 }
 
+/// Most entries of each list of remarks: a file that lacks something everywhere says so often enough.
+const MOST_REMARKS: usize = 1000;
+
+fn remark(list: &mut Vec<String>, text: impl FnOnce() -> String) {
+    if list.len() < MOST_REMARKS {
+        list.push(text());
+    }
+}
+
 #[derive(Default)]
 struct Reader {
     names: Names,
@@ -147,10 +157,12 @@ impl Reader {
     fn known(&mut self, place: &Place<'_, '_>, known: &[&str]) -> Result<(), ReadError> {
         for (name, _) in place.fields()? {
             if !known.contains(&name.as_str()) {
-                self.notes.push(format!(
-                    "the field {} is unknown and was not read",
-                    place.path_of(name)
-                ));
+                remark(&mut self.notes, || {
+                    format!(
+                        "the field {} is unknown and was not read",
+                        place.path_of(name)
+                    )
+                });
             }
         }
         Ok(())
@@ -176,7 +188,7 @@ impl Reader {
         match place.optional(field)? {
             Some(place) => read(self, place),
             None => {
-                self.missing.push(place.path_of(field));
+                remark(&mut self.missing, || place.path_of(field));
                 Ok(otherwise)
             }
         }
@@ -309,7 +321,7 @@ impl Reader {
             Some(system) => Some(self.system(system)?),
             None => {
                 if verdict != Verdict::Unsettled {
-                    self.missing.push(place.path_of("system"));
+                    remark(&mut self.missing, || place.path_of("system"));
                 }
                 None
             }
@@ -340,16 +352,19 @@ impl Reader {
 
     fn evidence(&mut self, place: &Place<'_, '_>, verdict: Verdict) -> Result<(), ReadError> {
         let Some(evidence) = place.optional("evidence")? else {
-            self.missing.push(place.path_of("evidence"));
+            remark(&mut self.missing, || place.path_of("evidence"));
             return Ok(());
         };
         let kind = evidence.required("kind")?;
-        if kind.text()? != "proved" && verdict != Verdict::Unsettled {
-            self.notes.push(format!(
-                "{} is {}; this version knows proofs only and takes the claim as one to prove",
-                kind.path(),
-                excerpt(kind.text()?)
-            ));
+        let word = kind.text()?;
+        if word != "proved" && verdict != Verdict::Unsettled {
+            remark(&mut self.notes, || {
+                format!(
+                    "{} is {}; this version knows proofs only and takes the claim as one to prove",
+                    kind.path(),
+                    excerpt(word)
+                )
+            });
         }
         Ok(())
     }
@@ -359,11 +374,13 @@ impl Reader {
             && let Some(form) = place.optional("form")?
             && *form.node != Node::List(Vec::new())
         {
-            self.notes.push(format!(
-                "{} was not read: a claim that is {} has no form",
-                form.path(),
-                verdict.word()
-            ));
+            remark(&mut self.notes, || {
+                format!(
+                    "{} was not read: a claim that is {} has no form",
+                    form.path(),
+                    verdict.word()
+                )
+            });
         }
         match verdict {
             Verdict::Holds => Ok(Finding::Holds {
@@ -372,7 +389,7 @@ impl Reader {
             Verdict::Refuted => match place.optional("certificate")? {
                 Some(certificate) => Ok(Finding::Refuted(self.certificate(certificate)?)),
                 None => {
-                    self.missing.push(place.path_of("certificate"));
+                    remark(&mut self.missing, || place.path_of("certificate"));
                     Ok(Finding::Refuted(Refutation::Contradiction {
                         rows: Vec::new(),
                         value: self.names.zero(),

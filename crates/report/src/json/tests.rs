@@ -242,3 +242,20 @@ fn a_missing_certificate_and_a_left_over_form_are_reported() {
     let typo = CONTRACT_ONLY.replace("\"evidence\"", "\"evidnce\"");
     assert!(read_json(&typo).unwrap().notes[0].contains("claims[0].evidnce"));
 }
+
+#[test]
+fn remarks_on_a_file_are_bounded() {
+    let claims = vec![r#"{"name": "a", "verdict": "unsettled", "unknown": 1}"#; 2000].join(",");
+    let read = read_json(&format!(
+        r#"{{"format": "linform-result/1", "claims": [{claims}]}}"#
+    ))
+    .unwrap();
+    assert_eq!(read.record.claims.len(), 2000);
+    assert_eq!((read.missing.len(), read.notes.len()), (1000, 1000));
+    let fields: Vec<String> = (0..20_000).map(|field| format!("\"{field}\": 0")).collect();
+    let error = read_json(&format!("{{{}}}", fields.join(","))).unwrap_err();
+    assert!(
+        error.to_string().contains("more than 10000 fields"),
+        "{error}"
+    );
+}
