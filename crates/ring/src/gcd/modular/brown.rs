@@ -69,14 +69,14 @@ pub(super) fn gcd(
                 useless = 0;
             }
         }
-        if useless > PATIENCE {
+        // The scaled gcd has at most the degree of the operands and of the scale together.
+        if useless > PATIENCE || found.points.len() > radix as usize + lead.len() + CONFIRMATIONS {
             return Ok(None);
         }
     }
     let result = found.columns(field);
     let extra = content(field, &result);
-    let primitive = without(field, result, &extra);
-    let mut result: Columns = primitive;
+    let mut result = without(field, result, &extra);
     for (_, column) in &mut result {
         *column = univariate::product(field, column, &common);
     }
