@@ -75,7 +75,7 @@ fn traces_are_those_of_shinault_and_tracy() {
     assert_eq!(traces.count(), TRACES.len());
 }
 
-/// Minors of the same traces, derived as the table above; corrections of Choup 2006 and Bornemann 2024.
+/// Minors of the same traces, derived as the table above; the corrections of Choup 2006 and of Baik & Jenkins 2013.
 #[test]
 fn minors_of_traces_are_linear_forms_and_products_are_not() {
     let record = solve_named("airy-traces");
@@ -97,7 +97,7 @@ fn minors_of_traces_are_linear_forms_and_products_are_not() {
             "first correction of the Gaussian unitary ensemble",
             &[(1, "1/20*t^2"), (2, "-3/40")],
         ),
-        // F. Bornemann, Forum Math. Sigma 12 (2024) e36.
+        // In another scaling, J. Baik & R. Jenkins, Ann. Probab. 41 (2013) 4359–4406.
         (
             "first correction of the hard-to-soft transition",
             &[(1, "3/10*t^2"), (2, "-1/5")],

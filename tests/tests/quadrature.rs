@@ -1,7 +1,7 @@
 //! Traces of the Airy kernel by quadrature of the operator, against the forms found by algebra.
 //!
 //! The decimals were computed apart from this program by Gauss–Legendre quadrature of the Fredholm determinant and of the
-//! resolvent (F. Bornemann, Math. Comp. 79 (2010) 871–915), with 110 and 140 nodes agreeing to 48 digits. The forms are
+//! resolvent (Nyström’s method), with 110 and 140 nodes agreeing to 48 digits. The forms are
 //! evaluated in exact arithmetic on those decimals, so only their rounding separates the two sides.
 
 use linform_engine::published::Coefficient;

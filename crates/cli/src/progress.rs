@@ -18,7 +18,7 @@ impl Progress {
         };
         let bar = ProgressBar::with_draw_target(None, target);
         if let Ok(style) =
-            ProgressStyle::with_template("{msg} {bar:30} {pos}/{len}, about {eta} left")
+            ProgressStyle::with_template("{msg} {pos} of {len} claims {bar:30} about {eta} left")
         {
             bar.set_style(style);
         }
@@ -29,26 +29,19 @@ impl Progress {
     pub(crate) fn finish(&self) {
         self.bar.finish_and_clear();
     }
-
-    fn show(&self, message: &'static str, done: usize, total: usize) {
-        if self.bar.message() != message {
-            self.bar.reset();
-            self.bar.set_message(message);
-        }
-        self.bar.set_length(total as u64);
-        self.bar.set_position(done as u64);
-    }
 }
 
 impl Observer for Progress {
     fn evaluated(&self, done: usize, total: usize) {
         // One definition takes microseconds: redrawing for each would cost more than the work.
-        if done % 64 == 0 || done == total {
-            self.show("evaluating definitions", done, total);
+        if done.is_multiple_of(64) || done == total {
+            self.bar
+                .set_message(format!("{done} of {total} definitions,"));
         }
     }
 
     fn decided(&self, done: usize, total: usize) {
-        self.show("deciding claims", done, total);
+        self.bar.set_length(total as u64);
+        self.bar.set_position(done as u64);
     }
 }

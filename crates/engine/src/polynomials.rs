@@ -8,6 +8,7 @@ use crate::record::CoefficientKind;
 use crate::strategy::Solver;
 use linform_ring::{Polynomial, Ring, Symbols};
 use linform_scalar::{Control, Rational, Stop};
+use std::sync::OnceLock;
 
 /// Why an element of the ring was not computed.
 #[derive(Clone, Debug, PartialEq)]
@@ -48,15 +49,23 @@ pub(crate) struct PrimitiveSolution {
     pub(crate) solved: Solved,
 }
 
-/// The arithmetic of the ring, which remembers the primitives it has found.
+/// The forms that were found and that other definitions rest on, each written once.
+#[derive(Debug, Default)]
+pub(crate) struct Forms {
+    /// By the index of the primitive in the program.
+    pub(crate) primitives: Vec<OnceLock<PrimitiveSolution>>,
+    /// For each claim instance its coefficients, once it is known to hold.
+    pub(crate) claims: Vec<OnceLock<Vec<Polynomial>>>,
+    /// The names of the claim instances.
+    pub(crate) titles: Vec<String>,
+}
+
+/// The arithmetic of the ring.
 pub(crate) struct RingArithmetic<'a> {
     pub(crate) ring: &'a Ring,
     pub(crate) solver: Solver,
     pub(crate) control: &'a dyn Control,
-    /// The solutions so far, by the index of the primitive in the program.
-    pub(crate) primitives: Vec<Option<PrimitiveSolution>>,
-    /// For each claim instance the coefficients found, if it holds, and its name with index.
-    pub(crate) claims: Vec<(String, Option<Vec<Polynomial>>)>,
+    pub(crate) forms: &'a Forms,
 }
 
 impl Arithmetic for RingArithmetic<'_> {
@@ -139,11 +148,13 @@ impl Arithmetic for RingArithmetic<'_> {
             }
         };
         let (element, terms) = (element.name.clone(), element.terms.clone());
-        self.primitives[index] = Some(PrimitiveSolution {
-            element,
-            terms,
-            solved,
-        });
+        if let Some(place) = self.forms.primitives.get(index) {
+            let _ = place.set(PrimitiveSolution {
+                element,
+                terms,
+                solved,
+            });
+        }
         Ok(value)
     }
 
@@ -152,12 +163,16 @@ impl Arithmetic for RingArithmetic<'_> {
         element: &YieldedElement,
         terms: &[&Polynomial],
     ) -> Result<Polynomial, EvaluationError> {
-        let (claim, coefficients) = &self.claims[element.claim];
-        match coefficients {
+        match self.forms.claims.get(element.claim).and_then(OnceLock::get) {
             Some(coefficients) => Ok(combine(coefficients.iter(), terms, self.control)?),
             None => Err(EvaluationError::Prerequisite {
                 element: element.name.clone(),
-                claim: claim.clone(),
+                claim: self
+                    .forms
+                    .titles
+                    .get(element.claim)
+                    .cloned()
+                    .unwrap_or_default(),
             }),
         }
     }
@@ -201,8 +216,7 @@ pub(crate) fn ring_of(prepared: &Prepared, control: &dyn Control) -> Result<Ring
             ring: &partial,
             solver: Solver::Auto,
             control,
-            primitives: vec![None; prepared.program.primitives().len()],
-            claims: Vec::new(),
+            forms: &Forms::default(),
         };
         let mut values = vec![None; prepared.program.len()];
         prepared

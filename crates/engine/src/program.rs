@@ -210,7 +210,7 @@ impl Program {
         roots: &[NodeId],
         values: &mut [Option<A::Element>],
     ) -> Result<(), A::Error> {
-        for node in self.missing_for(roots, values) {
+        for node in self.missing_for(roots, |node| values[node.0].is_some()) {
             let value =
                 self.evaluate_node(arithmetic, node, &|operand| values[operand.0].as_ref())?;
             values[node.0] = Some(value);
@@ -218,17 +218,21 @@ impl Program {
         Ok(())
     }
 
-    /// The nodes that have to be evaluated for `roots`, in the order of the program: what an evaluated node depends on
-    /// is not needed again.
-    pub(crate) fn missing_for<T>(&self, roots: &[NodeId], values: &[Option<T>]) -> Vec<NodeId> {
+    /// The nodes that have to be evaluated for `roots`, in the order of the program: what a node with a value depends on is
+    /// not needed again.
+    pub(crate) fn missing_for(
+        &self,
+        roots: &[NodeId],
+        has_value: impl Fn(NodeId) -> bool,
+    ) -> Vec<NodeId> {
         let mut missing = vec![false; self.len()];
         roots
             .iter()
-            .for_each(|root| missing[root.0] = values[root.0].is_none());
+            .for_each(|root| missing[root.0] = !has_value(*root));
         for position in (0..self.len()).rev() {
             if missing[position] {
                 self.operations[position]
-                    .for_each_operand(|operand| missing[operand.0] |= values[operand.0].is_none());
+                    .for_each_operand(|operand| missing[operand.0] |= !has_value(operand));
             }
         }
         (0..self.len())

@@ -1,7 +1,7 @@
 //! Running a prepared spec: definitions are evaluated, claims decided, findings proved and recorded.
 
 use crate::matching::{self, Match, Solved};
-use crate::polynomials::{EvaluationError, RingArithmetic, ring_of};
+use crate::polynomials::{EvaluationError, Forms, RingArithmetic, ring_of};
 use crate::prepare::{Instance, Prepared, TermList};
 use crate::program::{NodeId, Operation};
 use crate::publish::Publisher;
@@ -13,7 +13,8 @@ use crate::strategy::{Method, Solver};
 use linform_ring::{Polynomial, Ring};
 use linform_scalar::{Control, Stop};
 use linform_spec::Coefficients;
-use rayon::prelude::*;
+use std::sync::OnceLock;
+use std::sync::atomic::{AtomicUsize, Ordering};
 
 /// What the user may choose.
 #[derive(Clone, Copy, Debug, Default)]
@@ -59,6 +60,37 @@ pub fn solve(
 /// The value of a node, or why it has none.
 type Value = Result<Polynomial, EvaluationError>;
 
+/// What is found, each thing written once: one thread evaluates definitions while others decide the claims that are ready.
+struct Found {
+    values: Vec<OnceLock<Value>>,
+    forms: Forms,
+    records: Vec<OnceLock<ClaimRecord>>,
+    /// The number of claims decided so far.
+    decided: AtomicUsize,
+}
+
+impl Found {
+    fn new(prepared: &Prepared) -> Found {
+        fn empty<T>(length: usize) -> Vec<OnceLock<T>> {
+            std::iter::repeat_with(OnceLock::new).take(length).collect()
+        }
+        Found {
+            values: empty(prepared.program.len()),
+            forms: Forms {
+                primitives: empty(prepared.program.primitives().len()),
+                claims: empty(prepared.instances.len()),
+                titles: prepared.instances.iter().map(Instance::title).collect(),
+            },
+            records: empty(prepared.instances.len()),
+            decided: AtomicUsize::new(0),
+        }
+    }
+
+    fn value(&self, node: NodeId) -> Option<&Value> {
+        self.values[node.position()].get()
+    }
+}
+
 struct Run<'a> {
     prepared: &'a Prepared,
     wanted: Vec<usize>,
@@ -66,7 +98,6 @@ struct Run<'a> {
     control: &'a dyn Control,
     observer: &'a dyn Observer,
     publisher: Publisher,
-    decided: Vec<Option<ClaimRecord>>,
 }
 
 impl<'a> Run<'a> {
@@ -79,18 +110,16 @@ impl<'a> Run<'a> {
     ) -> Self {
         let mut needed = wanted.to_vec();
         // A wanted claim may use what earlier claims yield; those are decided as well.
-        for position in (0..prepared.instances.len())
-            .rev()
-            .filter(|&position| wanted[position])
-        {
-            for claim in yielding_claims(prepared, &roots_of(&prepared.instances[position])) {
-                needed[claim] = true;
+        for position in (0..prepared.instances.len()).rev() {
+            if needed[position] {
+                for claim in yielding_claims(prepared, &roots_of(&prepared.instances[position])) {
+                    needed[claim] = true;
+                }
             }
         }
         let wanted = (0..prepared.instances.len())
             .filter(|&position| needed[position])
             .collect();
-        let decided = vec![None; prepared.instances.len()];
         let publisher = Publisher::new(prepared);
         Run {
             prepared,
@@ -99,70 +128,25 @@ impl<'a> Run<'a> {
             control,
             observer,
             publisher,
-            decided,
         }
     }
 
-    fn finish(mut self) -> ResultRecord {
-        let (gradings, primitives) = match ring_of(self.prepared, self.control) {
-            Ok(ring) => self.decide_all(&ring),
+    fn finish(self) -> ResultRecord {
+        let found = Found::new(self.prepared);
+        let gradings = match ring_of(self.prepared, self.control) {
+            Ok(ring) => {
+                self.decide_all(&ring, &found);
+                self.gradings(&ring, &found)
+            }
             Err(error) => {
-                let finding = unsettled(&error);
-                for position in self.wanted.clone() {
-                    self.decided[position] = Some(self.undecided(position, finding.clone()));
+                for &position in &self.wanted {
+                    let _ =
+                        found.records[position].set(self.undecided(position, unsettled(&error)));
                 }
-                (Vec::new(), Vec::new())
+                Vec::new()
             }
         };
-        ResultRecord {
-            program: concat!("linform ", env!("CARGO_PKG_VERSION")).to_owned(),
-            spec: crate::source::spec_record(&self.prepared.model),
-            gradings,
-            primitives,
-            claims: self.decided.into_iter().flatten().collect(),
-        }
-    }
-
-    fn decide_all(&mut self, ring: &Ring) -> (Vec<GradingRecord>, Vec<PrimitiveRecord>) {
-        let prepared = self.prepared;
-        let mut arithmetic = RingArithmetic {
-            ring,
-            solver: self.options.solver,
-            control: self.control,
-            primitives: vec![None; prepared.program.primitives().len()],
-            claims: prepared
-                .instances
-                .iter()
-                .map(|instance| (instance.title(), None))
-                .collect(),
-        };
-        let mut values: Vec<Option<Value>> = vec![None; prepared.program.len()];
-        let roots: Vec<NodeId> = self
-            .wanted
-            .iter()
-            .flat_map(|&position| roots_of(&prepared.instances[position]))
-            .collect();
-        let needed = prepared.program.needed_for(&roots);
-        let mut queue: Vec<usize> = Vec::new();
-        let mut evaluated = 0;
-        for position in self.wanted.clone() {
-            let roots = roots_of(&prepared.instances[position]);
-            let open = |claim: usize| self.decided[claim].is_none();
-            if yielding_claims(prepared, &roots).into_iter().any(open) {
-                self.decide_queue(ring, &mut queue, &values, &mut arithmetic);
-            }
-            evaluated += self.evaluate(
-                &roots,
-                &mut arithmetic,
-                &mut values,
-                evaluated,
-                needed.len(),
-            );
-            queue.push(position);
-        }
-        self.decide_queue(ring, &mut queue, &values, &mut arithmetic);
-        let gradings = self.gradings(ring, &mut arithmetic, &mut values);
-        let primitives = arithmetic.primitives.iter().flatten();
+        let primitives = found.forms.primitives.iter().filter_map(OnceLock::get);
         let primitives = primitives.filter_map(|solution| {
             let Match::Holds(coefficients) = &solution.solved.matched else {
                 return None;
@@ -173,20 +157,63 @@ impl<'a> Run<'a> {
                 form: self.publisher.form(&solution.terms, coefficients),
             })
         });
-        (gradings, primitives.collect())
+        ResultRecord {
+            program: concat!("linform ", env!("CARGO_PKG_VERSION")).to_owned(),
+            spec: crate::source::spec_record(&self.prepared.model),
+            gradings,
+            primitives: primitives.collect(),
+            claims: found
+                .records
+                .into_iter()
+                .filter_map(OnceLock::into_inner)
+                .collect(),
+        }
+    }
+
+    /// Evaluates on this thread and decides on the thread pool. A claim that uses the coefficients of earlier ones waits
+    /// until those are decided.
+    fn decide_all(&self, ring: &Ring, found: &Found) {
+        let program = &self.prepared.program;
+        let all: Vec<NodeId> = self
+            .wanted
+            .iter()
+            .flat_map(|&position| roots_of(&self.prepared.instances[position]))
+            .collect();
+        let total = program.needed_for(&all).len();
+        let mut evaluated = 0;
+        let mut rest = self.wanted.iter().copied().peekable();
+        while rest.peek().is_some() {
+            rayon::in_place_scope(|scope| {
+                while let Some(&position) = rest.peek() {
+                    let roots = roots_of(&self.prepared.instances[position]);
+                    let open = |claim: usize| found.records[claim].get().is_none();
+                    if yielding_claims(self.prepared, &roots).into_iter().any(open) {
+                        break;
+                    }
+                    evaluated += self.evaluate(ring, &roots, found, evaluated, total);
+                    rest.next();
+                    scope.spawn(move |_| self.decide_into(ring, position, found));
+                }
+            });
+        }
+    }
+
+    fn decide_into(&self, ring: &Ring, position: usize, found: &Found) {
+        let (record, coefficients) = self.decide(ring, position, found);
+        if let Some(coefficients) = coefficients {
+            let _ = found.forms.claims[position].set(coefficients);
+        }
+        let _ = found.records[position].set(record);
+        let done = found.decided.fetch_add(1, Ordering::Relaxed) + 1;
+        self.observer.decided(done, self.wanted.len());
     }
 
     /// The gradings for which every law's `V₁` and `V₂` are homogeneous, and with them all `F^(n)/F`.
-    fn gradings(
-        &self,
-        ring: &Ring,
-        arithmetic: &mut RingArithmetic<'_>,
-        values: &mut [Option<Value>],
-    ) -> Vec<GradingRecord> {
-        self.evaluate(&self.prepared.laws, arithmetic, values, 0, 0);
+    fn gradings(&self, ring: &Ring, found: &Found) -> Vec<GradingRecord> {
+        self.evaluate(ring, &self.prepared.laws, found, 0, 0);
         let mut homogeneous = Vec::new();
         for node in &self.prepared.laws {
-            let Some(Ok(first)) = &values[node.position()] else {
+            let Some(Ok(first)) = found.value(*node) else {
                 return Vec::new();
             };
             let second = ring
@@ -203,72 +230,50 @@ impl<'a> Run<'a> {
     /// Evaluates what the roots need; a failure is kept with the node and passed to all that need it.
     fn evaluate(
         &self,
+        ring: &Ring,
         roots: &[NodeId],
-        arithmetic: &mut RingArithmetic<'_>,
-        values: &mut [Option<Value>],
+        found: &Found,
         done: usize,
         total: usize,
     ) -> usize {
         let program = &self.prepared.program;
-        let missing = program.missing_for(roots, values);
+        let (solver, control, forms) = (self.options.solver, self.control, &found.forms);
+        let mut arithmetic = RingArithmetic {
+            ring,
+            solver,
+            control,
+            forms,
+        };
+        let missing = program.missing_for(roots, |node| found.value(node).is_some());
         for (step, node) in missing.iter().enumerate() {
-            let mut failure = self.control.proceed().err().map(EvaluationError::from);
+            let mut failure = control.proceed().err().map(EvaluationError::from);
             program.operation(*node).for_each_operand(|operand| {
-                if let (None, Some(Err(error))) = (&failure, &values[operand.position()]) {
+                if let (None, Some(Err(error))) = (&failure, found.value(operand)) {
                     failure = Some(error.clone());
                 }
             });
             let value = match failure {
                 Some(error) => Err(error),
-                None => program.evaluate_node(arithmetic, *node, &|operand: NodeId| {
-                    values[operand.position()]
-                        .as_ref()
-                        .and_then(|value| value.as_ref().ok())
+                None => program.evaluate_node(&mut arithmetic, *node, &|operand: NodeId| {
+                    found.value(operand).and_then(|value| value.as_ref().ok())
                 }),
             };
-            values[node.position()] = Some(value);
+            let _ = found.values[node.position()].set(value);
             self.observer.evaluated(done + step + 1, total);
         }
         missing.len()
-    }
-
-    fn decide_queue(
-        &mut self,
-        ring: &Ring,
-        queue: &mut Vec<usize>,
-        values: &[Option<Value>],
-        arithmetic: &mut RingArithmetic<'_>,
-    ) {
-        let before = self.decided.iter().flatten().count();
-        let finished = std::sync::atomic::AtomicUsize::new(before);
-        let known = &*arithmetic;
-        let results: Vec<(usize, ClaimRecord, Option<Vec<Polynomial>>)> = queue
-            .par_iter()
-            .map(|&position| {
-                let (record, coefficients) = self.decide(ring, position, values, known);
-                let done = finished.fetch_add(1, std::sync::atomic::Ordering::Relaxed) + 1;
-                self.observer.decided(done, self.wanted.len());
-                (position, record, coefficients)
-            })
-            .collect();
-        queue.clear();
-        for (position, record, coefficients) in results {
-            self.decided[position] = Some(record);
-            arithmetic.claims[position].1 = coefficients;
-        }
     }
 
     fn decide(
         &self,
         ring: &Ring,
         position: usize,
-        values: &[Option<Value>],
-        arithmetic: &RingArithmetic<'_>,
+        found: &Found,
     ) -> (ClaimRecord, Option<Vec<Polynomial>>) {
         let instance = &self.prepared.instances[position];
         let mut last = None;
         for list in &instance.alternatives {
-            match self.decide_list(ring, instance, list, values, arithmetic) {
+            match self.decide_list(ring, instance, list, found) {
                 Ok(decision) => {
                     let refuted = matches!(decision.0.finding, Finding::Refuted(_));
                     last = Some(decision);
@@ -295,17 +300,16 @@ impl<'a> Run<'a> {
         ring: &Ring,
         instance: &Instance,
         list: &TermList,
-        values: &[Option<Value>],
-        arithmetic: &RingArithmetic<'_>,
+        found: &Found,
     ) -> Result<(ClaimRecord, Option<Vec<Polynomial>>), EvaluationError> {
         let kind = self.kind(instance);
-        let value = |node: &NodeId| match &values[node.position()] {
+        let value = |node: &NodeId| match found.value(*node) {
             Some(Ok(value)) => Ok(value),
             Some(Err(error)) => Err(error.clone()),
             None => Err(Stop::SizeLimit.into()),
         };
         let mut known_by = instance.known_by;
-        let solved = match self.primitive_outcome(instance, list, kind, values, arithmetic) {
+        let solved = match self.primitive_outcome(instance, list, kind, found) {
             Some(solved) => {
                 known_by = KnownBy::Derivative;
                 solved
@@ -334,9 +338,9 @@ impl<'a> Run<'a> {
             }
         };
         let mut coefficients = None;
-        if let Match::Holds(found) = &solved.matched {
-            self.prove(ring, instance, list, known_by, found, &value)?;
-            coefficients = found
+        if let Match::Holds(solution) = &solved.matched {
+            self.prove(ring, instance, list, known_by, solution, &value)?;
+            coefficients = solution
                 .iter()
                 .map(linform_solver::Fraction::is_polynomial)
                 .collect();
@@ -358,8 +362,7 @@ impl<'a> Run<'a> {
         instance: &Instance,
         list: &TermList,
         kind: CoefficientKind,
-        values: &[Option<Value>],
-        arithmetic: &RingArithmetic<'_>,
+        found: &Found,
     ) -> Option<Solved> {
         let Operation::Primitive {
             primitive, terms, ..
@@ -373,10 +376,10 @@ impl<'a> Run<'a> {
         {
             return None;
         }
-        if let Some(solution) = &arithmetic.primitives[*primitive] {
+        if let Some(solution) = found.forms.primitives[*primitive].get() {
             return Some(solution.solved.clone());
         }
-        match &values[instance.target.position()] {
+        match found.value(instance.target) {
             Some(Err(EvaluationError::Primitive {
                 element, solved, ..
             })) if *element == self.prepared.program.primitives()[*primitive].name => {

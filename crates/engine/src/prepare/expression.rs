@@ -223,7 +223,6 @@ impl Builder<'_> {
                 Ok(self.derived(node, 1))
             }
             (Function::Minor, [family, rows, columns]) => self.minor(family, rows, columns, span),
-            
             (Function::Correction, _) => Err(self.report(
                 "`correction` needs the expansion of a finite-size model, which this version does not have",
                 *span,
