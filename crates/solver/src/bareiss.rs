@@ -5,7 +5,7 @@ use crate::square::{Quotients, Square};
 use linform_ring::Polynomial;
 use linform_scalar::{Control, Stop};
 
-/// Solves a square system by fraction-free elimination with exact division, or nothing if it is singular.
+/// Solves a square system by fraction-free elimination with exact division.
 ///
 /// After `k` steps every entry is a minor of order `k + 1`, and the division by the pivot of the step before is
 /// exact. A row without an entry in the pivot's column would only be multiplied by quotients of pivots; these
@@ -26,12 +26,11 @@ use linform_scalar::{Control, Stop};
 pub(crate) fn solve_square(
     square: &Square<'_>,
     control: &dyn Control,
-) -> Result<Option<Vec<Quotients>>, Stop> {
+) -> Result<Vec<Quotients>, Stop> {
     let mut rows = dense_rows(square);
-    let Some(pivots) = eliminate(&mut rows, square.size, smallest_pivot, control)? else {
-        return Ok(None);
-    };
-    back_substitute(&rows, &pivots, square, control).map(Some)
+    let pivots = eliminate(&mut rows, square.size, smallest_pivot, control)?
+        .expect("the matrix of a square system is not singular");
+    back_substitute(&rows, &pivots, square, control)
 }
 
 /// A row at the step for which it was last computed.

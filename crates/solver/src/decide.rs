@@ -70,7 +70,7 @@ fn solve_square(
     square: &Square<'_>,
     method: Method,
     control: &dyn Control,
-) -> Result<Option<Vec<Quotients>>, Stop> {
+) -> Result<Vec<Quotients>, Stop> {
     match method {
         Method::FractionFree => bareiss::solve_square(square, control),
         Method::Modular => modular::solve_square(square, control),
@@ -89,7 +89,7 @@ fn refute(
     };
     let square = Square::of_contradiction(system, contradiction);
     let method = choose(&square, control)?;
-    let Some(weights) = solve_square(&square, method, control)?.and_then(|mut w| w.pop()) else {
+    let Some(weights) = solve_square(&square, method, control)?.pop() else {
         return Ok(None);
     };
     let found = certificate::of_weights(system, contradiction, weights, control)?;
@@ -115,10 +115,7 @@ fn solve_profile(
         .collect();
     let square = Square::of_profile(system, profile, &free);
     let method = choose(&square, control)?;
-    let Some(solutions) = solve_square(&square, method, control)? else {
-        return Ok(None);
-    };
-    let mut solutions = solutions.into_iter();
+    let mut solutions = solve_square(&square, method, control)?.into_iter();
     let Some(particular) = solutions.next() else {
         return Ok(None);
     };

@@ -6,7 +6,9 @@ use crate::{Fraction, System};
 use linform_ring::{Monomial, Polynomial};
 use linform_scalar::{Control, Integer, Rational, Stop};
 
-/// A system `S·X = B` with a matrix that is not singular.
+/// A system `S·X = B`.
+///
+/// *Invariant*: `S` is not singular, because it was not so modulo a prime at a point.
 pub(crate) struct Square<'a> {
     /// The number of rows and of unknowns.
     pub(crate) size: usize,

@@ -18,13 +18,14 @@ const PATIENCE: Patience = Patience {
 /// So many unlucky primes in a row mean that the stages that are expected are wrong.
 const MOST_UNLUCKY: usize = 3;
 
-/// Solves a square system by images modulo primes, or nothing if it seems singular.
+/// Solves a square system by images modulo primes.
 ///
-/// The result is multiplied out in every row of the square system before it is returned.
+/// The result is multiplied out in every row of the square system before it is returned. No prime is used
+/// twice, and only finitely many are unlucky, so the search ends.
 pub(crate) fn solve_square(
     square: &Square<'_>,
     control: &dyn Control,
-) -> Result<Option<Vec<Quotients>>, Stop> {
+) -> Result<Vec<Quotients>, Stop> {
     let polynomials: Vec<&Polynomial> = square.entries.iter().map(|entry| entry.2).collect();
     let places = square.places();
     let plan = Plan::new(&polynomials);
@@ -32,7 +33,7 @@ pub(crate) fn solve_square(
     let most_primes = most_primes(square);
     let mut next_prime = 0;
     // A round fails only if its first prime was unlucky in a way that did not show.
-    for _round in 0..4 {
+    loop {
         recovery.forget();
         let mut unlucky = 0;
         let mut lift: Option<Lift> = None;
@@ -60,11 +61,10 @@ pub(crate) fn solve_square(
             if let Some(candidate) = candidate
                 && solves(square, &candidate, control)?
             {
-                return Ok(Some(candidate));
+                return Ok(candidate);
             }
         }
     }
-    Ok(None)
 }
 
 /// The number of coefficients of the solution, numerator and denominator together, and of the determinant, if

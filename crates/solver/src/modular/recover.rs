@@ -351,3 +351,33 @@ impl Column {
         })
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::random::prime_field;
+
+    #[test]
+    fn a_combination_that_hides_a_numerator_is_noticed() {
+        // The entries x² and −x² with equal weights add up to 0.
+        let field = prime_field(0);
+        let mut column = Column::new(&field);
+        column.weights = vec![field.one(); 2];
+        for point in [2, 3, 4, 5].map(|value| field.element(value)) {
+            let square = field.mul(point, point);
+            let vector = vec![square, field.neg(square)];
+            column.add_combination(&field, point, &vector);
+            column.samples.push(vector);
+        }
+        let hidden = column.interpolation.fraction(&field).unwrap();
+        assert_eq!(hidden.numerator_length, 0);
+        assert_eq!(column.finish(&field, &hidden), None);
+        let shape = Shape {
+            numerator_length: 3,
+            ..hidden
+        };
+        let image = column.finish(&field, &shape).unwrap();
+        let minus = field.neg(field.one());
+        assert_eq!(image.coefficients, [0, 0, field.one(), 0, 0, minus]);
+    }
+}
