@@ -157,3 +157,17 @@ fn sparse_solutions_in_several_symbols_are_left_to_elimination() {
         assert_eq!(decide_by_all(&system), Outcome::Unique(expected));
     }
 }
+
+#[test]
+fn columns_that_depend_only_modulo_the_first_primes_make_no_family() {
+    let p = primes(2);
+    let system = rows(
+        2,
+        &[
+            &[read("t"), read("a"), read("0")],
+            &[&read("t*b") + &p, read("a*b"), read("0")],
+        ],
+    );
+    let zero = Outcome::Unique(vec![Fraction::zero(); 2]);
+    assert_eq!(decide_by_all(&system), zero);
+}
