@@ -268,7 +268,7 @@ fn huge_requests_are_refused_at_once() {
         (claim("", "2^999999999*q"), 2),
         (claim("", &deep), 2),
         (claim("for = \"j = 0..1000000000\"", "q"), 2),
-        (claim("", "(1+t)^9999*(1+q)^9999"), 3),
+        (claim("", "(1 + t + q + q')^900"), 3),
     ];
     for (position, (claims, expected)) in cases.iter().enumerate() {
         let path = write_spec(&folder, "huge.toml", claims);

@@ -1,0 +1,5 @@
+//! Claims from text to verdict.
+
+mod common;
+mod unfolding;
+mod verdicts;
