@@ -1,7 +1,6 @@
-//! Coefficients in the published number types: what a result file holds, and what the independent check computes with.
+//! Coefficients in the published number types: what a result file holds.
 //!
-//! This module shares no code with crate `ring`: polynomials are maps from exponents to `num` rationals, multiplied
-//! term by term.
+//! This module shares no code with crate `ring`: polynomials are maps from exponents to `num` rationals.
 
 use linform_scalar::published::{BigInt, BigRational, One, Signed, Zero};
 use std::collections::BTreeMap;
@@ -20,15 +19,6 @@ impl PublishedPolynomial {
     pub fn constant(symbols: usize, value: BigRational) -> Self {
         let mut result = Self::default();
         result.add_term(vec![0; symbols], value);
-        result
-    }
-
-    /// A single symbol.
-    pub fn symbol(symbols: usize, index: usize) -> Self {
-        let mut exponents = vec![0; symbols];
-        exponents[index] = 1;
-        let mut result = Self::default();
-        result.add_term(exponents, BigRational::one());
         result
     }
 
@@ -58,6 +48,16 @@ impl PublishedPolynomial {
             .map(|(exponents, value)| (exponents.as_slice(), value))
     }
 
+    fn divided_by(&self, divisor: &BigRational) -> Self {
+        let terms = self
+            .terms
+            .iter()
+            .map(|(exponents, value)| (exponents.clone(), value / divisor));
+        PublishedPolynomial {
+            terms: terms.collect(),
+        }
+    }
+
     /// Number of terms.
     pub fn len(&self) -> usize {
         self.terms.len()
@@ -75,105 +75,6 @@ impl PublishedPolynomial {
                 .terms
                 .iter()
                 .all(|(exponents, value)| value.is_one() && exponents.iter().all(|&e| e == 0))
-    }
-
-    /// The sum.
-    pub fn plus(&self, other: &Self) -> Self {
-        let mut sum = self.clone();
-        other
-            .terms
-            .iter()
-            .for_each(|(exponents, value)| sum.add_term(exponents.clone(), value.clone()));
-        sum
-    }
-
-    /// The difference.
-    pub fn minus(&self, other: &Self) -> Self {
-        let mut difference = self.clone();
-        other
-            .terms
-            .iter()
-            .for_each(|(exponents, value)| difference.add_term(exponents.clone(), -value));
-        difference
-    }
-
-    /// The product, term by term.
-    pub fn times(&self, other: &Self) -> Self {
-        let mut product = Self::default();
-        for (left, a) in &self.terms {
-            product.add_multiple(other, left, a);
-        }
-        product
-    }
-
-    /// The product, asking `proceed` before each row of terms.
-    pub(crate) fn times_while<E>(
-        &self,
-        other: &Self,
-        proceed: &mut dyn FnMut() -> Result<(), E>,
-    ) -> Result<Self, E> {
-        let mut product = Self::default();
-        for (left, a) in &self.terms {
-            proceed()?;
-            product.add_multiple(other, left, a);
-        }
-        Ok(product)
-    }
-
-    fn add_multiple(&mut self, other: &Self, left: &[u32], a: &BigRational) {
-        for (right, b) in &other.terms {
-            let exponents = left.iter().zip(right).map(|(e, f)| e + f).collect();
-            self.add_term(exponents, a * b);
-        }
-    }
-
-    /// The value in the integers modulo a word, with a word for each symbol; nothing if a denominator vanishes.
-    pub(crate) fn residue(&self, modulus: u64, point: &[u64]) -> Option<u64> {
-        let modulus = u128::from(modulus);
-        let power = |mut base: u128, mut exponent: u128| {
-            let mut result = 1 % modulus;
-            base %= modulus;
-            while exponent > 0 {
-                if exponent & 1 == 1 {
-                    result = result * base % modulus;
-                }
-                base = base * base % modulus;
-                exponent >>= 1;
-            }
-            result
-        };
-        let big = BigInt::from(modulus);
-        let word = |value: &BigInt| -> u128 {
-            let reduced = ((value % &big) + &big) % &big;
-            reduced.iter_u64_digits().next().map_or(0, u128::from)
-        };
-        let mut sum = 0;
-        for (exponents, value) in &self.terms {
-            let denominator = word(value.denom());
-            if denominator == 0 {
-                return None;
-            }
-            let mut term = word(value.numer()) * power(denominator, modulus - 2) % modulus;
-            for (exponent, place) in exponents.iter().zip(point) {
-                term = term * power(u128::from(*place), u128::from(*exponent)) % modulus;
-            }
-            sum = (sum + term) % modulus;
-        }
-        Some(sum as u64)
-    }
-
-    /// A rational multiple.
-    pub fn scaled(&self, factor: &BigRational) -> Self {
-        if factor.is_zero() {
-            return Self::default();
-        }
-        Self {
-            terms: self
-                .terms
-                .iter()
-                .map(|(exponents, value)| (exponents.clone(), value * factor))
-                .collect(),
-        }
     }
 
     /// The text with the given names: `3/10*t^2 - 1/5`.
@@ -300,8 +201,18 @@ impl Coefficient {
             Some(part) => read(part)?,
             None => PublishedPolynomial::constant(names.len(), BigRational::one()),
         };
-        if denominator.is_empty() {
+        let Some((exponents, leading)) = denominator.terms().next() else {
             return Err(wrong("the denominator is 0"));
+        };
+        if denominator.len() == 1 && exponents.iter().all(|&exponent| exponent == 0) {
+            // `t/3` is a polynomial.
+            let numerator = numerator.divided_by(leading);
+            let denominator = PublishedPolynomial::constant(names.len(), BigRational::one());
+            return Ok(Coefficient {
+                names: names.clone(),
+                numerator,
+                denominator,
+            });
         }
         Ok(Coefficient {
             names: names.clone(),

@@ -5,6 +5,7 @@
 
 use crate::{Integer, Rational};
 pub use num_bigint::BigInt;
+pub use num_integer::{gcd, lcm};
 pub use num_rational::BigRational;
 pub use num_traits::{One, Pow, Signed, Zero};
 

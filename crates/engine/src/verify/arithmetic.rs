@@ -1,5 +1,6 @@
 //! The arithmetic of the independent check: polynomials over published rationals, multiplied term by term.
 
+use super::expansion::Expansion;
 use crate::arithmetic::Arithmetic;
 use crate::prepare::Prepared;
 use crate::program::{PrimitiveElement, YieldedElement};
@@ -29,7 +30,7 @@ pub(super) struct CheckArithmetic<'a> {
     pub(super) record: &'a ResultRecord,
     pub(super) control: &'a dyn Control,
     /// The derivatives of the generators.
-    pub(super) derivatives: Vec<PublishedPolynomial>,
+    pub(super) derivatives: Vec<Expansion>,
 }
 
 impl CheckArithmetic<'_> {
@@ -38,57 +39,31 @@ impl CheckArithmetic<'_> {
     }
 
     /// The derivative: variable′ = 1, constants′ = 0.
-    pub(super) fn derivative(
-        &self,
-        value: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, Stop> {
-        let mut result = PublishedPolynomial::default();
-        for (exponents, coefficient) in value.terms() {
-            self.control.proceed()?;
-            for (index, &exponent) in exponents
-                .iter()
-                .enumerate()
-                .filter(|(_, exponent)| **exponent > 0)
-            {
-                let mut lowered = exponents.to_vec();
-                lowered[index] -= 1;
-                let factor = coefficient * BigRational::from_integer(exponent.into());
-                if Some(index) == self.prepared.variable() {
-                    result.add_term(lowered, factor);
-                } else if let Some(derivative) = self.derivatives.get(index) {
-                    for (powers, inner) in derivative.terms() {
-                        let product = lowered.iter().zip(powers).map(|(e, f)| e + f).collect();
-                        result.add_term(product, &factor * inner);
-                    }
-                }
+    pub(super) fn derivative(&self, value: &Expansion) -> Result<Expansion, Stop> {
+        let one = self.one();
+        let variable = self.prepared.variable();
+        let of_symbol = |index| {
+            if Some(index) == variable {
+                Some(&one)
+            } else {
+                self.derivatives.get(index)
             }
-        }
-        Ok(result)
+        };
+        value.derivative(of_symbol, &mut || self.control.proceed())
     }
 
     /// The product, asking for leave once for each term of the left factor.
-    pub(super) fn product(
-        &self,
-        a: &PublishedPolynomial,
-        b: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, Stop> {
-        a.times_while(b, &mut || self.control.proceed())
+    pub(super) fn product(&self, a: &Expansion, b: &Expansion) -> Result<Expansion, Stop> {
+        a.times(b, &mut || self.control.proceed())
     }
 
     /// A polynomial in the base symbols as one in all symbols.
-    pub(super) fn lift(&self, value: &PublishedPolynomial) -> PublishedPolynomial {
-        let mut lifted = PublishedPolynomial::default();
-        for (exponents, coefficient) in value.terms() {
-            let mut all = vec![0; self.prepared.generators()];
-            all.extend_from_slice(exponents);
-            all.resize(self.symbols(), 0);
-            lifted.add_term(all, coefficient.clone());
-        }
-        lifted
+    pub(super) fn lift(&self, value: &PublishedPolynomial) -> Expansion {
+        Expansion::lift(value, self.prepared.generators(), self.symbols())
     }
 
-    pub(super) fn one(&self) -> PublishedPolynomial {
-        PublishedPolynomial::constant(self.symbols(), BigRational::one())
+    pub(super) fn one(&self) -> Expansion {
+        Expansion::constant(self.symbols(), &BigRational::one())
     }
 
     /// Numerator and denominator of `Σ coefficient · term` for the terms of a form, which are looked up by their texts.
@@ -96,10 +71,10 @@ impl CheckArithmetic<'_> {
         &self,
         form: &[FormTerm],
         texts: &[String],
-        terms: &[&PublishedPolynomial],
-    ) -> Result<(PublishedPolynomial, PublishedPolynomial), CheckError> {
+        terms: &[&Expansion],
+    ) -> Result<(Expansion, Expansion), CheckError> {
         let mut used = vec![false; texts.len()];
-        let mut numerator = PublishedPolynomial::default();
+        let mut numerator = Expansion::default();
         let mut denominator = self.one();
         for FormTerm { term, coefficient } in form {
             let place = texts
@@ -133,9 +108,9 @@ impl CheckArithmetic<'_> {
     /// Numerator and denominator of the derivative of a quotient.
     pub(super) fn quotient_derivative(
         &self,
-        numerator: &PublishedPolynomial,
-        denominator: &PublishedPolynomial,
-    ) -> Result<(PublishedPolynomial, PublishedPolynomial), Stop> {
+        numerator: &Expansion,
+        denominator: &Expansion,
+    ) -> Result<(Expansion, Expansion), Stop> {
         let left = self.product(&self.derivative(numerator)?, denominator)?;
         let right = self.product(numerator, &self.derivative(denominator)?)?;
         Ok((left.minus(&right), self.product(denominator, denominator)?))
@@ -143,53 +118,37 @@ impl CheckArithmetic<'_> {
 }
 
 impl Arithmetic for CheckArithmetic<'_> {
-    type Element = PublishedPolynomial;
+    type Element = Expansion;
     type Error = CheckError;
 
-    fn rational(&mut self, value: &Rational) -> Result<PublishedPolynomial, CheckError> {
-        Ok(PublishedPolynomial::constant(
+    fn rational(&mut self, value: &Rational) -> Result<Expansion, CheckError> {
+        Ok(Expansion::constant(
             self.symbols(),
-            publish_rational(value),
+            &publish_rational(value),
         ))
     }
 
-    fn symbol(&mut self, index: usize) -> Result<PublishedPolynomial, CheckError> {
-        Ok(PublishedPolynomial::symbol(self.symbols(), index))
+    fn symbol(&mut self, index: usize) -> Result<Expansion, CheckError> {
+        Ok(Expansion::symbol(self.symbols(), index))
     }
 
-    fn add(
-        &mut self,
-        a: &PublishedPolynomial,
-        b: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, CheckError> {
+    fn add(&mut self, a: &Expansion, b: &Expansion) -> Result<Expansion, CheckError> {
         Ok(a.plus(b))
     }
 
-    fn sub(
-        &mut self,
-        a: &PublishedPolynomial,
-        b: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, CheckError> {
+    fn sub(&mut self, a: &Expansion, b: &Expansion) -> Result<Expansion, CheckError> {
         Ok(a.minus(b))
     }
 
-    fn mul(
-        &mut self,
-        a: &PublishedPolynomial,
-        b: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, CheckError> {
+    fn mul(&mut self, a: &Expansion, b: &Expansion) -> Result<Expansion, CheckError> {
         Ok(self.product(a, b)?)
     }
 
-    fn scale(
-        &mut self,
-        factor: &Rational,
-        a: &PublishedPolynomial,
-    ) -> Result<PublishedPolynomial, CheckError> {
+    fn scale(&mut self, factor: &Rational, a: &Expansion) -> Result<Expansion, CheckError> {
         Ok(a.scaled(&publish_rational(factor)))
     }
 
-    fn derive(&mut self, a: &PublishedPolynomial) -> Result<PublishedPolynomial, CheckError> {
+    fn derive(&mut self, a: &Expansion) -> Result<Expansion, CheckError> {
         Ok(self.derivative(a)?)
     }
 
@@ -197,9 +156,9 @@ impl Arithmetic for CheckArithmetic<'_> {
         &mut self,
         _index: usize,
         element: &PrimitiveElement,
-        derivative: &PublishedPolynomial,
-        terms: &[&PublishedPolynomial],
-    ) -> Result<PublishedPolynomial, CheckError> {
+        derivative: &Expansion,
+        terms: &[&Expansion],
+    ) -> Result<Expansion, CheckError> {
         let Some(found) = self
             .record
             .primitives
@@ -230,8 +189,8 @@ impl Arithmetic for CheckArithmetic<'_> {
     fn yielded(
         &mut self,
         element: &YieldedElement,
-        terms: &[&PublishedPolynomial],
-    ) -> Result<PublishedPolynomial, CheckError> {
+        terms: &[&Expansion],
+    ) -> Result<Expansion, CheckError> {
         let instance = &self.prepared.instances[element.claim];
         let wrong = |what: &str| {
             CheckError::Wrong(format!(
@@ -251,7 +210,7 @@ impl Arithmetic for CheckArithmetic<'_> {
         let Finding::Holds { form } = &claim.finding else {
             return Err(wrong("which does not hold"));
         };
-        let mut value = PublishedPolynomial::default();
+        let mut value = Expansion::default();
         let mut used = vec![false; claim.terms.len()];
         for FormTerm { term, coefficient } in form {
             let place =

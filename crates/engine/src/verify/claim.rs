@@ -1,24 +1,25 @@
 //! The checks of single claims.
 
 use super::arithmetic::CheckError;
+use super::expansion::Expansion;
 use super::{Check, CheckOutcome};
 use crate::prepare::{Instance, Prepared};
 use crate::program::Operation;
-use crate::published::{Coefficient, PublishedPolynomial, monomial_text};
+use crate::published::{Coefficient, monomial_text};
 use crate::record::{
     CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, GradingRecord,
     IndependenceRecord, KnownBy, Refutation,
 };
 use linform_scalar::PrimeField;
-use linform_scalar::published::{BigInt, BigRational, Zero};
+use linform_scalar::published::{BigInt, Zero};
 use std::collections::{BTreeMap, BTreeSet};
 
 /// The elements that a claim compares: the target (or its derivative) and the columns of the system.
 struct Compared {
-    right: PublishedPolynomial,
-    terms: Vec<PublishedPolynomial>,
+    right: Expansion,
+    terms: Vec<Expansion>,
     /// The terms, or for a target known by its derivative the pairs (derivative of term, term).
-    columns: Vec<PublishedPolynomial>,
+    columns: Vec<Expansion>,
     paired: bool,
     /// The number of leading symbols whose monomials are compared: the generators, and the variable where the coefficients
     /// are constants.
@@ -169,8 +170,8 @@ impl Check<'_> {
         let monomials: BTreeSet<Vec<u32>> = all
             .flat_map(|value| {
                 value
-                    .terms()
-                    .map(|(exponents, _)| exponents[..split].to_vec())
+                    .monomials()
+                    .map(|exponents| exponents[..split].to_vec())
             })
             .collect();
         if (system.rows, system.columns) != (monomials.len(), compared.columns.len()) {
@@ -191,8 +192,8 @@ impl Check<'_> {
         claim: &ClaimRecord,
         form: &[FormTerm],
         compared: &Compared,
-    ) -> Result<(PublishedPolynomial, PublishedPolynomial), CheckError> {
-        let terms: Vec<&PublishedPolynomial> = compared.terms.iter().collect();
+    ) -> Result<(Expansion, Expansion), CheckError> {
+        let terms: Vec<&Expansion> = compared.terms.iter().collect();
         let (numerator, denominator) = self.arithmetic.form_value(form, &claim.terms, &terms)?;
         if Self::by_derivative(claim) {
             return Ok(self
@@ -239,7 +240,7 @@ impl Check<'_> {
         value: &Coefficient,
         compared: &Compared,
     ) -> Result<(), CheckError> {
-        let mut multipliers: BTreeMap<&str, PublishedPolynomial> = BTreeMap::new();
+        let mut multipliers: BTreeMap<&str, Expansion> = BTreeMap::new();
         for row in rows {
             if !row.multiplier.is_polynomial() {
                 return wrong("a multiplier of the certificate has a denominator");
@@ -249,8 +250,8 @@ impl Check<'_> {
                 return wrong("an equation stands twice in the certificate");
             }
         }
-        let combine = |element: &PublishedPolynomial| -> Result<PublishedPolynomial, CheckError> {
-            let mut sum = PublishedPolynomial::default();
+        let combine = |element: &Expansion| -> Result<Expansion, CheckError> {
+            let mut sum = Expansion::default();
             for (monomial, cofactor) in self.split_rows(element, compared.split) {
                 if let Some(multiplier) = multipliers.get(monomial.as_str()) {
                     sum = sum.plus(&self.arithmetic.product(multiplier, &cofactor)?);
@@ -274,24 +275,11 @@ impl Check<'_> {
     }
 
     /// The rows of an element: the monomials in the first symbols, by name, with their cofactors in the rest.
-    fn split_rows(
-        &self,
-        element: &PublishedPolynomial,
-        split: usize,
-    ) -> BTreeMap<String, PublishedPolynomial> {
+    fn split_rows(&self, element: &Expansion, split: usize) -> BTreeMap<String, Expansion> {
         let names = &self.arithmetic.prepared.symbols;
-        let mut result: BTreeMap<String, PublishedPolynomial> = BTreeMap::new();
-        for (exponents, value) in element.terms() {
-            let mut cofactor = exponents.to_vec();
-            let mut leading = vec![0; exponents.len()];
-            leading[..split].copy_from_slice(&exponents[..split]);
-            cofactor[..split].fill(0);
-            result
-                .entry(row_name(&leading, names))
-                .or_default()
-                .add_term(cofactor, value.clone());
-        }
-        result
+        let rows = element.split(split).into_iter();
+        rows.map(|(leading, cofactor)| (row_name(&leading, names), cofactor))
+            .collect()
     }
 
     fn check_no_primitive(
@@ -305,8 +293,8 @@ impl Check<'_> {
             return wrong("the target is not one that is known by its derivative");
         }
         // Σ (p b′ + r b) = X′ …
-        let terms: Vec<&PublishedPolynomial> = compared.terms.iter().collect();
-        let derived: Vec<&PublishedPolynomial> = compared.columns.iter().step_by(2).collect();
+        let terms: Vec<&Expansion> = compared.terms.iter().collect();
+        let derived: Vec<&Expansion> = compared.columns.iter().step_by(2).collect();
         let (n, d) = self
             .arithmetic
             .form_value(coefficients, &claim.terms, &derived)?;
@@ -331,7 +319,7 @@ impl Check<'_> {
                 )
             })
         };
-        let zero = || (PublishedPolynomial::default(), self.arithmetic.one());
+        let zero = || (Expansion::default(), self.arithmetic.one());
         for term in &claim.terms {
             let (n, d) = find(coefficients, term).unwrap_or_else(zero);
             let (m, e) = find(derivatives, term).unwrap_or_else(zero);
@@ -438,7 +426,7 @@ fn determinant_vanishes(mut matrix: Vec<Vec<u64>>, prime: u64) -> bool {
 pub(super) fn grading_is_right(
     grading: &GradingRecord,
     prepared: &Prepared,
-    elements: &[(PublishedPolynomial, Option<usize>)],
+    elements: &[(Expansion, Option<usize>)],
 ) -> bool {
     let Ok(modulus) = grading.modulus.parse::<BigInt>() else {
         return false;
@@ -479,9 +467,7 @@ pub(super) fn grading_is_right(
         return false;
     }
     elements.iter().all(|(element, generator)| {
-        let mut terms = element
-            .terms()
-            .map(|(exponents, _): (&[u32], &BigRational)| weight(exponents));
+        let mut terms = element.monomials().map(weight);
         match generator {
             Some(generator) => {
                 let expected = &weights[*generator] + &derivation;

@@ -7,13 +7,14 @@
 
 mod arithmetic;
 mod claim;
+mod expansion;
 
 use crate::prepare::{PrepareLimits, prepare};
 use crate::program::NodeId;
-use crate::published::PublishedPolynomial;
 use crate::record::{ClaimRecord, KnownBy, ResultRecord, Verdict};
 use crate::source::{hash_of, model_of};
 use arithmetic::{CheckArithmetic, CheckError};
+use expansion::Expansion;
 use linform_scalar::{Control, Stop};
 use linform_spec::{Environment, Failure};
 
@@ -116,7 +117,7 @@ pub fn through_of(record: &ResultRecord) -> Option<i64> {
 
 struct Check<'a> {
     arithmetic: CheckArithmetic<'a>,
-    values: Vec<Option<PublishedPolynomial>>,
+    values: Vec<Option<Expansion>>,
 }
 
 impl Check<'_> {
@@ -170,7 +171,7 @@ impl Check<'_> {
     }
 
     /// The value of a node, computed once.
-    fn value(&mut self, node: NodeId) -> Result<PublishedPolynomial, CheckError> {
+    fn value(&mut self, node: NodeId) -> Result<Expansion, CheckError> {
         let program = &self.arithmetic.prepared.program;
         program.evaluate(&mut self.arithmetic, &[node], &mut self.values)?;
         self.values[node.position()]
@@ -181,7 +182,7 @@ impl Check<'_> {
     /// The weights in the record must make the derivation and the laws homogeneous.
     fn check_gradings(&mut self, verification: &mut Verification) -> Result<(), Stop> {
         let (prepared, record) = (self.arithmetic.prepared, self.arithmetic.record);
-        let mut pairs: Vec<(PublishedPolynomial, Option<usize>)> = Vec::new();
+        let mut pairs: Vec<(Expansion, Option<usize>)> = Vec::new();
         for (generator, derivative) in self.arithmetic.derivatives.clone().into_iter().enumerate() {
             pairs.push((derivative, Some(generator)));
         }
