@@ -242,8 +242,9 @@ fn an_interrupt_keeps_what_was_decided() {
         .spawn()
         .unwrap();
     std::thread::sleep(std::time::Duration::from_millis(700));
-    let sent = Command::new("kill")
-        .args(["-INT", &child.id().to_string()])
+    // The shell's own `kill`: a small system need not have one as a program.
+    let sent = Command::new("sh")
+        .args(["-c", &format!("kill -INT {}", child.id())])
         .status()
         .unwrap();
     assert!(sent.success());
