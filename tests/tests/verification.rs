@@ -1,6 +1,6 @@
 //! Records are re-checked by a way that took no part in finding them: true ones are confirmed, changed ones rejected.
 
-use linform_engine::published::{Coefficient, PublishedPolynomial};
+use linform_engine::published::Coefficient;
 use linform_engine::record::{Finding, FormTerm, Refutation, ResultRecord, Verdict};
 use linform_engine::{CheckOutcome, Options, verify};
 use linform_scalar::Unlimited;
@@ -23,8 +23,8 @@ fn every_record_of_a_ready_spec_is_confirmed() {
 
 /// Adds 1 to the constant term of the numerator.
 fn change(coefficient: &mut Coefficient) {
-    let one = PublishedPolynomial::constant(coefficient.names.len(), BigRational::one());
-    coefficient.numerator = coefficient.numerator.plus(&one);
+    let constant = vec![0; coefficient.names.len()];
+    coefficient.numerator.add_term(constant, BigRational::one());
 }
 
 /// Asserts that exactly the claim at this position is rejected.

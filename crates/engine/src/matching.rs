@@ -25,6 +25,22 @@ pub(crate) struct Solved {
     pub(crate) matched: Match,
 }
 
+impl Solved {
+    /// The outcome for a claim that admits other coefficients: a unique rational solution is right where those are admitted.
+    pub(crate) fn for_kind(&self, kind: CoefficientKind) -> Solved {
+        let matched = match &self.matched {
+            Match::OtherCoefficients { coefficients, .. } if admitted(coefficients, kind) => {
+                Match::Holds(coefficients.clone())
+            }
+            other => other.clone(),
+        };
+        Solved {
+            matched,
+            ..self.clone()
+        }
+    }
+}
+
 /// The answer of the matching.
 #[derive(Clone, Debug, PartialEq)]
 pub(crate) enum Match {
@@ -52,6 +68,8 @@ pub(crate) enum Match {
         particular: Vec<Fraction>,
         /// A basis of the forms that vanish.
         kernel: Vec<Vec<Fraction>>,
+        /// A form equal to 1, if the target is known by its derivative and the terms span one.
+        shift: Option<Vec<Fraction>>,
     },
     /// No solution: equations, by their monomials, with multipliers, and the sum of the right sides.
     Contradiction {
@@ -238,6 +256,7 @@ pub(crate) fn match_value(
                 .iter()
                 .map(|vector| equations.unscale(vector, true))
                 .collect(),
+            shift: None,
         },
         Outcome::Inconsistent(certificate) => equations.contradiction(&certificate),
     };
@@ -369,15 +388,9 @@ fn match_dependent(
             } => {
                 return unique_or_family(ring, collect(&values)?, terms, kind, solver, control);
             }
-            Match::Family { particular, kernel } => {
-                let kernel = kernel
-                    .iter()
-                    .map(|vector| collect(vector))
-                    .collect::<Result<_, _>>()?;
-                return Ok(Match::Family {
-                    particular: collect(&particular)?,
-                    kernel,
-                });
+            Match::Family { particular, .. } => {
+                let particular = collect(&particular)?;
+                return unique_or_family(ring, particular, terms, kind, solver, control);
             }
             _ => {}
         }
@@ -411,8 +424,8 @@ fn collect_powers(
     quotient(numerator, denominator, control)
 }
 
-/// A primitive was found; it is the only form if the terms, with the constant 1, are independent over the rational
-/// functions, because two forms with the same derivative differ by a constant.
+/// A primitive was found. Two forms with the same derivative differ by a constant, so the other solutions are given by the
+/// dependences of the terms and the constant 1 over the rational functions; without any, the form is the only one.
 fn unique_or_family(
     ring: &Ring,
     coefficients: Vec<Fraction>,
@@ -424,43 +437,68 @@ fn unique_or_family(
     let one = Polynomial::one();
     let columns: Vec<&Polynomial> = std::iter::once(&one).chain(terms.iter().copied()).collect();
     let zero = Polynomial::zero();
-    let dependence = match_value(
-        ring,
-        &zero,
-        &columns,
-        CoefficientKind::Rational,
-        solver,
-        control,
-    )?;
-    match dependence.matched {
-        Match::Family { kernel, .. } => {
-            // A dependence that uses the 1 is divided by its coefficient: it then shifts the form by a constant.
-            let mut shifts = Vec::with_capacity(kernel.len());
-            for vector in kernel {
-                let (first, rest) = vector.split_first().ok_or(Stop::SizeLimit)?;
-                let mut shift = Vec::with_capacity(rest.len());
-                for value in rest {
-                    shift.push(if first.numerator().is_zero() {
-                        value.clone()
-                    } else {
-                        let numerator = value.numerator().mul(first.denominator(), control)?;
-                        quotient(
-                            numerator,
-                            value.denominator().mul(first.numerator(), control)?,
-                            control,
-                        )?
-                    });
-                }
-                shifts.push(shift);
-            }
-            Ok(Match::Family {
-                particular: coefficients,
-                kernel: shifts,
-            })
+    let rational = CoefficientKind::Rational;
+    let dependence = match_value(ring, &zero, &columns, rational, solver, control)?;
+    let Match::Family { kernel, .. } = dependence.matched else {
+        let unique = admitted(&coefficients, kind);
+        return Ok(if unique {
+            Match::Holds(coefficients)
+        } else {
+            Match::DegreeLimit { degree: 0 }
+        });
+    };
+    // Among the dependences that use the 1, one is kept as the shift and subtracted from the others.
+    let mut shift: Option<Vec<Fraction>> = None;
+    let mut vanishing = Vec::with_capacity(kernel.len());
+    for vector in kernel {
+        let Some((first, rest)) = vector.split_first() else {
+            continue;
+        };
+        if first.is_zero() {
+            vanishing.push(rest.to_vec());
+            continue;
         }
-        _ if admitted(&coefficients, kind) => Ok(Match::Holds(coefficients)),
-        _ => Ok(Match::DegreeLimit { degree: 0 }),
+        // first·1 + Σ rest·b = 0, so −rest/first is a form equal to 1.
+        let form = rest
+            .iter()
+            .map(|value| divided(&value.scale(&-Rational::ONE), first, control))
+            .collect::<Result<Vec<_>, _>>()?;
+        match &shift {
+            None => shift = Some(form),
+            Some(known) => {
+                let pairs = form.iter().zip(known);
+                vanishing.push(
+                    pairs
+                        .map(|(a, b)| difference(a, b, control))
+                        .collect::<Result<_, _>>()?,
+                );
+            }
+        }
     }
+    Ok(Match::Family {
+        particular: coefficients,
+        kernel: vanishing,
+        shift,
+    })
+}
+
+fn divided(a: &Fraction, b: &Fraction, control: &dyn Control) -> Result<Fraction, Stop> {
+    let numerator = a.numerator().mul(b.denominator(), control)?;
+    quotient(
+        numerator,
+        a.denominator().mul(b.numerator(), control)?,
+        control,
+    )
+}
+
+fn difference(a: &Fraction, b: &Fraction, control: &dyn Control) -> Result<Fraction, Stop> {
+    let left = a.numerator().mul(b.denominator(), control)?;
+    let right = b.numerator().mul(a.denominator(), control)?;
+    quotient(
+        &left - &right,
+        a.denominator().mul(b.denominator(), control)?,
+        control,
+    )
 }
 
 /// Proves a form by exact substitution: `Σ pₙ bₙ − X = 0` in the ring, or the same for the derivatives.

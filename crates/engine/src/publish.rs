@@ -78,6 +78,20 @@ impl Publisher {
             .collect()
     }
 
+    /// As [`Publisher::form`], but where a term stands twice its zeros are kept: they tell which of the two is meant.
+    fn kernel_form(&self, terms: &[String], coefficients: &[Fraction]) -> Vec<FormTerm> {
+        let twice = |term: &String| terms.iter().filter(|other| *other == term).count() > 1;
+        terms
+            .iter()
+            .zip(coefficients)
+            .filter(|(term, coefficient)| !coefficient.is_zero() || twice(term))
+            .map(|(term, value)| FormTerm {
+                term: term.clone(),
+                coefficient: self.coefficient(value),
+            })
+            .collect()
+    }
+
     /// The text of a monomial of a row; `1` for the constant one.
     fn monomial(&self, monomial: &Monomial) -> String {
         let exponents: Vec<u32> = monomial
@@ -130,12 +144,17 @@ impl Publisher {
                 derivatives: self.form(terms, derivatives),
                 independence: self.independence(independence),
             }),
-            Match::Family { particular, kernel } => Finding::Undetermined {
+            Match::Family {
+                particular,
+                kernel,
+                shift,
+            } => Finding::Undetermined {
                 particular: self.form(terms, particular),
                 kernel: kernel
                     .iter()
-                    .map(|vector| self.form(terms, vector))
+                    .map(|vector| self.kernel_form(terms, vector))
                     .collect(),
+                shift: shift.as_ref().map(|form| self.form(terms, form)),
             },
             Match::Contradiction { rows, value } => Finding::Refuted(Refutation::Contradiction {
                 rows: rows

@@ -165,12 +165,15 @@ pub enum Finding {
     },
     /// Refuted, for a reason that can be checked.
     Refuted(Refutation),
-    /// The solutions are `particular + Σ cᵢ kernelᵢ` with any rational functions `cᵢ` of the base symbols.
+    /// The solutions are `particular + Σ cᵢ kernelᵢ`, where the `cᵢ` are any rational functions of the base symbols (of the
+    /// constants alone, for a claim about constant coefficients); and, if there is a shift, plus any constant times it.
     Undetermined {
         /// One solution.
         particular: Vec<FormTerm>,
         /// Forms that vanish identically, a basis of them.
         kernel: Vec<Vec<FormTerm>>,
+        /// For a target known by its derivative: a form equal to 1, if the terms span one. It moves the constant of integration.
+        shift: Option<Vec<FormTerm>>,
     },
     /// No verdict.
     Unsettled(Unsettled),

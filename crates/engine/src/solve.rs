@@ -281,9 +281,13 @@ impl<'a> Run<'a> {
                         break;
                     }
                 }
+                // A longer list may be the one in which a primitive was sought; a limit ends all.
                 Err(error) => {
+                    let limit = matches!(error, EvaluationError::Stop(_));
                     last = Some((self.undecided(position, unsettled(&error)), None));
-                    break;
+                    if limit {
+                        break;
+                    }
                 }
             }
         }
@@ -383,7 +387,7 @@ impl<'a> Run<'a> {
             Some(Err(EvaluationError::Primitive {
                 element, solved, ..
             })) if *element == self.prepared.program.primitives()[*primitive].name => {
-                Some((**solved).clone())
+                Some(solved.for_kind(kind))
             }
             _ => None,
         }
@@ -526,7 +530,7 @@ fn unsettled(error: &EvaluationError) -> Finding {
         EvaluationError::Prerequisite { element, claim } => (
             StopKind::Prerequisite,
             format!(
-                "`{element}` is defined by the coefficients of claim {claim}, which does not hold"
+                "`{element}` is defined by the coefficients of claim {claim}, which does not hold with polynomial coefficients"
             ),
         ),
         EvaluationError::Unproved(claim) => (

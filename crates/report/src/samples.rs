@@ -145,6 +145,7 @@ pub(crate) fn family() -> Finding {
             part("ratio(F,1)", polynomial(&[(1, 1, 0)])),
             part("ratio(F,2)", polynomial(&[(-1, 1, 1), (1, 5, 0)])),
         ]],
+        shift: None,
     }
 }
 

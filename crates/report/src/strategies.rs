@@ -91,8 +91,13 @@ fn findings() -> impl Strategy<Value = Finding> {
                 independence,
             })
         }),
-        (forms(), vec(forms(), 0..3))
-            .prop_map(|(particular, kernel)| Finding::Undetermined { particular, kernel }),
+        (forms(), vec(forms(), 0..3), proptest::option::of(forms())).prop_map(
+            |(particular, kernel, shift)| Finding::Undetermined {
+                particular,
+                kernel,
+                shift,
+            }
+        ),
         (0usize..6, texts()).prop_map(|(kind, reason)| {
             let stop = [
                 StopKind::Time,

@@ -91,6 +91,10 @@ pub(crate) fn evidence(style: Style, claim: &ClaimRecord) -> String {
             "proved: the derivative alone has a solution, and it is not the derivative of a form"
                 .to_owned()
         }
+        Finding::Undetermined { kernel, .. } if kernel.is_empty() => {
+            "proved: the derivatives agree, and the terms leave the constant of integration open"
+                .to_owned()
+        }
         Finding::Undetermined { .. } => "proved: the terms are linearly dependent".to_owned(),
         Finding::Unsettled(unsettled) => {
             let limit = format!("limit: {}", unsettled.stop.word());
@@ -303,8 +307,14 @@ pub(crate) fn letters(style: Style, claim: &ClaimRecord, count: usize) -> Vec<St
 
 fn names_of(claim: &ClaimRecord) -> Vec<String> {
     match &claim.finding {
-        Finding::Undetermined { particular, kernel } => {
-            let parts = particular.iter().chain(kernel.iter().flatten());
+        Finding::Undetermined {
+            particular,
+            kernel,
+            shift,
+        } => {
+            let parts = particular
+                .iter()
+                .chain(kernel.iter().chain(shift).flatten());
             parts
                 .flat_map(|part| part.coefficient.names.iter().cloned())
                 .collect()
@@ -316,12 +326,29 @@ fn names_of(claim: &ClaimRecord) -> Vec<String> {
 /// The functions that the letters of a family may be.
 pub(crate) fn free_choice(style: Style, claim: &ClaimRecord, letters: &[String]) -> String {
     let letters: Vec<String> = letters.iter().map(|letter| inline(style, letter)).collect();
+    let functions = match &claim.finding {
+        Finding::Undetermined { kernel, .. } => kernel.len().min(letters.len()),
+        _ => letters.len(),
+    };
     let kind = match claim.coefficients {
         CoefficientKind::Polynomial | CoefficientKind::Rational => "rational function",
         CoefficientKind::Constant => "constant",
     };
-    let plural = if letters.len() == 1 { "" } else { "s" };
-    format!("for any {kind}{plural} {}", letters.join(", "))
+    let several = |kind: &str, letters: &[String]| {
+        let plural = if letters.len() == 1 { "" } else { "s" };
+        format!("{kind}{plural} {}", letters.join(", "))
+    };
+    // What moves the constant of integration may itself only be a constant.
+    let (free, shifts) = letters.split_at(functions);
+    match (free.is_empty(), shifts.is_empty()) {
+        (false, false) => format!(
+            "for any {} and any {}",
+            several(kind, free),
+            several("constant", shifts)
+        ),
+        (true, _) => format!("for any {}", several("constant", shifts)),
+        (_, true) => format!("for any {}", several(kind, free)),
+    }
 }
 
 /// `graded modulo 3: q 1, q′ 2, t 2; the derivation 1`

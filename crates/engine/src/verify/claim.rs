@@ -5,13 +5,14 @@ use super::expansion::Expansion;
 use super::{Check, CheckOutcome};
 use crate::prepare::{Instance, Prepared};
 use crate::program::Operation;
-use crate::published::{Coefficient, monomial_text};
+use crate::published::{Coefficient, PublishedPolynomial, monomial_text};
 use crate::record::{
     CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, GradingRecord,
     IndependenceRecord, KnownBy, Refutation,
 };
-use linform_scalar::PrimeField;
 use linform_scalar::published::{BigInt, Zero};
+use linform_scalar::{PrimeField, SplitMix};
+use rustc_hash::FxHashMap;
 use std::collections::{BTreeMap, BTreeSet};
 
 /// The elements that a claim compares: the target (or its derivative) and the columns of the system.
@@ -63,17 +64,25 @@ impl Check<'_> {
         {
             return wrong("a refutation must take the longest list of terms");
         }
+        if kind == CoefficientKind::Constant && prepared.variable().is_some() {
+            check_constants(&claim.finding)?;
+        }
         let compared = self.compared(claim, instance, &list.nodes)?;
         self.check_shape(claim, &compared)?;
         let how = match &claim.finding {
             Finding::Holds { form } => {
                 check_kind(form, kind)?;
                 self.check_form(claim, form, &compared)?;
+                self.check_unique(&compared)?;
                 "the form was substituted and both sides expanded; they agree"
             }
-            Finding::Undetermined { particular, kernel } => {
+            Finding::Undetermined {
+                particular,
+                kernel,
+                shift,
+            } => {
                 self.check_form(claim, particular, &compared)?;
-                self.check_kernel(claim, kernel, &compared)?;
+                self.check_family(claim, kernel, shift.as_deref(), &compared)?;
                 "the particular form was substituted, and every form of the kernel expands to 0"
             }
             Finding::Refuted(Refutation::Contradiction { rows, value }) => {
@@ -216,21 +225,123 @@ impl Check<'_> {
         Ok(())
     }
 
-    fn check_kernel(
+    /// The kernel vanishes, is independent, and is all of it; the shift is 1.
+    fn check_family(
         &self,
         claim: &ClaimRecord,
         kernel: &[Vec<FormTerm>],
+        shift: Option<&[FormTerm]>,
         compared: &Compared,
     ) -> Result<(), CheckError> {
-        if kernel.is_empty() {
-            return wrong("a family of solutions needs a kernel");
-        }
+        // A form whose derivative is compared vanishes itself; without a varying coefficient its derivative does.
+        let terms: Vec<&Expansion> = compared.terms.iter().collect();
         for form in kernel {
-            if form.is_empty() || !self.left_side(claim, form, compared)?.0.is_empty() {
+            let value = if compared.paired {
+                self.arithmetic.form_value(form, &claim.terms, &terms)?.0
+            } else {
+                self.left_side(claim, form, compared)?.0
+            };
+            if !value.is_empty() {
                 return wrong("a form of the kernel does not vanish");
             }
         }
+        let forms: Vec<&[FormTerm]> = kernel.iter().map(Vec::as_slice).collect();
+        if self.rank_of_forms(&forms, &claim.terms) < kernel.len() {
+            return wrong("the forms of the kernel are dependent");
+        }
+        let (dimension, shifted) = if compared.paired {
+            let rank = self.rank(&terms, compared.split);
+            let one = self.arithmetic.one();
+            let with_one: Vec<&Expansion> =
+                std::iter::once(&one).chain(terms.iter().copied()).collect();
+            (
+                terms.len() - rank,
+                self.rank(&with_one, compared.split) == rank,
+            )
+        } else {
+            let columns: Vec<&Expansion> = compared.columns.iter().collect();
+            (columns.len() - self.rank(&columns, compared.split), false)
+        };
+        if kernel.len() != dimension || shift.is_some() != shifted || dimension == 0 && !shifted {
+            return wrong("the kernel does not have the dimension that the terms have");
+        }
+        if let Some(form) = shift {
+            let (numerator, denominator) =
+                self.arithmetic.form_value(form, &claim.terms, &terms)?;
+            if numerator != denominator {
+                return wrong("the form that should be 1 is not");
+            }
+        }
         Ok(())
+    }
+
+    /// Is the form the only one?
+    fn check_unique(&self, compared: &Compared) -> Result<(), CheckError> {
+        let columns: Vec<&Expansion> = compared.columns.iter().collect();
+        if self.rank(&columns, compared.split) == columns.len() {
+            return Ok(());
+        }
+        // Two forms with one derivative differ by a constant: the terms and 1 must be independent then.
+        let one = self.arithmetic.one();
+        let with_one: Vec<&Expansion> = std::iter::once(&one).chain(&compared.terms).collect();
+        if compared.paired && self.rank(&with_one, compared.split) == with_one.len() {
+            return Ok(());
+        }
+        wrong("the form is not the only one")
+    }
+
+    /// The rank of elements over the rational functions of the base, by their values modulo a prime at a point that nobody
+    /// chose. It never exceeds the rank sought, and falls short of it with a chance of about `degree · 2^-61`.
+    fn rank(&self, elements: &[&Expansion], split: usize) -> usize {
+        let point = self.point();
+        let mut rows: FxHashMap<Box<[u32]>, Vec<u64>> = FxHashMap::default();
+        for (column, element) in elements.iter().enumerate() {
+            for (monomial, entry) in element.split(split) {
+                let row = rows
+                    .entry(monomial)
+                    .or_insert_with(|| vec![0; elements.len()]);
+                row[column] = entry.residue(RANK_PRIME, &point).unwrap_or(0);
+            }
+        }
+        rank_modulo(rows.into_values(), RANK_PRIME)
+    }
+
+    /// The rank of the coefficient vectors of forms.
+    fn rank_of_forms(&self, forms: &[&[FormTerm]], texts: &[String]) -> usize {
+        let point = self.point();
+        let rows = forms.iter().map(|form| {
+            let mut row = vec![0; texts.len()];
+            let mut used = vec![false; texts.len()];
+            for FormTerm { term, coefficient } in *form {
+                let Some(place) =
+                    (0..texts.len()).find(|&place| texts[place] == *term && !used[place])
+                else {
+                    continue;
+                };
+                used[place] = true;
+                let residue = |value| self.arithmetic.lift(value).residue(RANK_PRIME, &point);
+                let (n, d) = (
+                    residue(&coefficient.numerator),
+                    residue(&coefficient.denominator),
+                );
+                if let (Some(n), Some(d)) = (n, d) {
+                    row[place] = quotient_modulo(n, d, RANK_PRIME);
+                }
+            }
+            row
+        });
+        rank_modulo(rows.collect::<Vec<_>>().into_iter(), RANK_PRIME)
+    }
+
+    /// A point for ranks.
+    fn point(&self) -> Vec<u64> {
+        let mut random = SplitMix::new(0x5241_4E4B);
+        self.arithmetic
+            .prepared
+            .symbols
+            .iter()
+            .map(|_| random.next_word() % RANK_PRIME)
+            .collect()
     }
 
     /// `Σ y · (row of the columns) = 0` and `Σ y · (row of the right side) = value ≠ 0`.
@@ -350,7 +461,7 @@ impl Check<'_> {
             .iter()
             .map(|name| point.get(name).copied().unwrap_or(0))
             .collect();
-        let mut matrix = vec![vec![0u64; rows.len()]; rows.len()];
+        let mut matrix = vec![vec![0u64; compared.columns.len()]; rows.len()];
         for (column, element) in compared.columns.iter().enumerate() {
             let entries = self.split_rows(element, compared.split);
             for (row, monomial) in rows.iter().enumerate() {
@@ -363,7 +474,7 @@ impl Check<'_> {
                 }
             }
         }
-        if determinant_vanishes(matrix, *prime) {
+        if rank_modulo(matrix.into_iter(), *prime) < rows.len() {
             return wrong("the determinant that should show uniqueness vanishes");
         }
         Ok(())
@@ -379,6 +490,9 @@ fn row_name(exponents: &[u32], names: &[String]) -> String {
     }
 }
 
+/// The Mersenne prime by which ranks are computed.
+const RANK_PRIME: u64 = (1 << 61) - 1;
+
 /// Are the coefficients of the kind that the claim admits?
 fn check_kind(form: &[FormTerm], kind: CoefficientKind) -> Result<(), CheckError> {
     if kind != CoefficientKind::Rational
@@ -389,37 +503,74 @@ fn check_kind(form: &[FormTerm], kind: CoefficientKind) -> Result<(), CheckError
     Ok(())
 }
 
-/// Plain elimination modulo a prime, written for the check alone.
-fn determinant_vanishes(mut matrix: Vec<Vec<u64>>, prime: u64) -> bool {
-    let p = u128::from(prime);
-    let mul = |a: u64, b: u64| (u128::from(a) * u128::from(b) % p) as u64;
-    let power = |mut base: u64, mut exponent: u64| {
-        let mut result = 1u64;
-        while exponent > 0 {
-            if exponent & 1 == 1 {
-                result = mul(result, base);
-            }
-            base = mul(base, base);
-            exponent >>= 1;
-        }
-        result
+/// Are the coefficients of a claim about constants free of the variable, which is the first of their symbols?
+fn check_constants(finding: &Finding) -> Result<(), CheckError> {
+    let none: &[Vec<FormTerm>] = &[];
+    let (form, kernel): (&[FormTerm], _) = match finding {
+        Finding::Holds { form } => (form, none),
+        Finding::Refuted(Refutation::OtherCoefficients { form, .. }) => (form, none),
+        Finding::Undetermined {
+            particular, kernel, ..
+        } => (particular, kernel.as_slice()),
+        _ => (&[], none),
     };
-    for step in 0..matrix.len() {
-        let Some(pivot) = (step..matrix.len()).find(|&row| matrix[row][step] != 0) else {
-            return true;
-        };
-        matrix.swap(step, pivot);
-        let inverse = power(matrix[step][step], prime - 2);
-        let (done, rest) = matrix.split_at_mut(step + 1);
-        let pivot_row = &done[step];
-        for row in rest.iter_mut().filter(|row| row[step] != 0) {
-            let factor = mul(row[step], inverse);
-            for (target, value) in row.iter_mut().zip(pivot_row).skip(step) {
-                *target = ((u128::from(*target) + p - u128::from(mul(factor, *value))) % p) as u64;
+    let varies = |value: &PublishedPolynomial| {
+        value
+            .terms()
+            .any(|(exponents, _)| exponents.first().is_some_and(|&exponent| exponent > 0))
+    };
+    let mut terms = form.iter().chain(kernel.iter().flatten());
+    if terms.any(|FormTerm { coefficient, .. }| {
+        varies(&coefficient.numerator) || varies(&coefficient.denominator)
+    }) {
+        return wrong("a coefficient that should be constant contains the variable");
+    }
+    Ok(())
+}
+
+fn product_modulo(a: u64, b: u64, prime: u64) -> u64 {
+    (u128::from(a) * u128::from(b) % u128::from(prime)) as u64
+}
+
+/// `a/b`, by Fermat; 0 if `b` is 0.
+fn quotient_modulo(a: u64, b: u64, prime: u64) -> u64 {
+    let (mut base, mut exponent, mut result) = (b, prime - 2, a);
+    while exponent > 0 {
+        if exponent & 1 == 1 {
+            result = product_modulo(result, base, prime);
+        }
+        base = product_modulo(base, base, prime);
+        exponent >>= 1;
+    }
+    result
+}
+
+/// The rank of the rows, by plain elimination modulo a prime, written for the check alone.
+fn rank_modulo(rows: impl Iterator<Item = Vec<u64>>, prime: u64) -> usize {
+    // Reduced rows with the place of their leading 1.
+    let mut basis: Vec<(usize, Vec<u64>)> = Vec::new();
+    for mut row in rows {
+        for (pivot, known) in &basis {
+            let factor = row[*pivot];
+            if factor != 0 {
+                for (target, value) in row.iter_mut().zip(known) {
+                    let negative = prime - product_modulo(factor, *value, prime);
+                    *target =
+                        ((u128::from(*target) + u128::from(negative)) % u128::from(prime)) as u64;
+                }
             }
+        }
+        if basis.len() == row.len() {
+            break;
+        }
+        if let Some(pivot) = row.iter().position(|&value| value != 0) {
+            let leading = row[pivot];
+            row.iter_mut()
+                .for_each(|value| *value = quotient_modulo(*value, leading, prime));
+            basis.push((pivot, row));
         }
     }
-    false
+    basis.len()
 }
 
 /// Do the weights make every element homogeneous, and the derivation too?

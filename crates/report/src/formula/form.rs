@@ -18,7 +18,7 @@ pub(crate) fn form(style: Style, form: &[FormTerm]) -> Vec<Product> {
             style,
             first,
             &signed(style, &part.coefficient),
-            &part.term,
+            part,
         ));
     }
     if products.is_empty() {
@@ -88,21 +88,34 @@ fn order_of(term: &str) -> Option<(&str, u32)> {
         .filter(|(law, _)| law.starts_with("ratio(") || law.starts_with("derivative("))
 }
 
-fn product(style: Style, first: bool, coefficient: &Signed, term: &str) -> Product {
+/// Does the term hold a symbol that coefficients may hold? Then it is set in parentheses: `t·(t·q)` is not `t²·q`.
+fn holds_base_symbol(part: &FormTerm) -> bool {
+    let mut words = part
+        .term
+        .split(|c: char| !(c.is_alphanumeric() || c == '_' || c == '\''));
+    words.any(|word| part.coefficient.names.iter().any(|name| name == word))
+}
+
+fn product(style: Style, first: bool, coefficient: &Signed, part: &FormTerm) -> Product {
     let sign = match (first, coefficient.negative) {
         (true, false) => String::new(),
         (true, true) => style.minus().to_owned(),
         (false, false) => "+ ".to_owned(),
         (false, true) => format!("{} ", style.minus()),
     };
-    let term = expression(style, term);
+    let level = if holds_base_symbol(part) {
+        Level::Power
+    } else {
+        Level::Product
+    };
+    let term = expression(style, &part.term);
     let trivial = term.text == "1";
     let several = coefficient.summands.len() > 1;
     let dot = style.pick("*", "·", "\\,");
     let tail = match (coefficient.is_unit(), trivial) {
-        (true, _) => return vec![format!("{sign}{}", term.at(style, Level::Product))],
+        (true, _) => return vec![format!("{sign}{}", term.at(style, level))],
         (false, true) => String::new(),
-        (false, false) => format!("{dot}{}", term.at(style, Level::Product)),
+        (false, false) => format!("{dot}{}", term.at(style, level)),
     };
     if let (Style::Latex, Some(denominator)) = (style, &coefficient.denominator) {
         let numerator = joined(style, &coefficient.summands);

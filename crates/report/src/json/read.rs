@@ -149,6 +149,7 @@ const CLAIM: &[&str] = &[
     "certificate",
     "particular",
     "kernel",
+    "shift",
     "limit",
 ];
 
@@ -401,6 +402,10 @@ impl Reader {
                 kernel: self.or_default(place, "kernel", |reader, place| {
                     place.list(|vector| reader.form(vector))
                 })?,
+                shift: match place.optional("shift")? {
+                    Some(shift) => Some(self.form(shift)?),
+                    None => None,
+                },
             }),
             Verdict::Unsettled => self
                 .or(place, "limit", unknown_limit(), Self::limit)

@@ -126,9 +126,16 @@ fn claim(claim: &ClaimRecord) -> Node {
         match &claim.finding {
             Finding::Holds { .. } => {}
             Finding::Refuted(refutation) => more("certificate", certificate(refutation)),
-            Finding::Undetermined { particular, kernel } => {
+            Finding::Undetermined {
+                particular,
+                kernel,
+                shift,
+            } => {
                 more("particular", form(particular));
                 more("kernel", Node::list(kernel, |vector| form(vector)));
+                if let Some(shift) = shift {
+                    more("shift", form(shift));
+                }
             }
             Finding::Unsettled(unsettled) => more(
                 "limit",

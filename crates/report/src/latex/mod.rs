@@ -82,12 +82,16 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
     let target = parts.join(" ");
     match &claim.finding {
         Finding::Holds { form: found } => out.push_str(&equation(&parts, &form(STYLE, found))),
-        Finding::Undetermined { particular, kernel } => {
-            let letters = words::letters(STYLE, claim, kernel.len());
+        Finding::Undetermined {
+            particular,
+            kernel,
+            shift,
+        } => {
+            let letters = words::letters(STYLE, claim, kernel.len() + shift.iter().len());
             let multiples: Vec<(String, &[FormTerm])> = letters
                 .iter()
                 .cloned()
-                .zip(kernel.iter().map(Vec::as_slice))
+                .zip(kernel.iter().chain(shift).map(Vec::as_slice))
                 .collect();
             out.push_str(&equation(
                 &parts,

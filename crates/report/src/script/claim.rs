@@ -66,10 +66,15 @@ pub(super) fn write(
                 form(emitter, found)?
             )
         }
-        Finding::Undetermined { particular, kernel } => {
+        Finding::Undetermined {
+            particular,
+            kernel,
+            shift,
+        } => {
             let particular = form(emitter, particular)?;
             let kernel = kernel
                 .iter()
+                .chain(shift)
                 .map(|vector| form(emitter, vector))
                 .collect::<Result<Vec<_>, _>>()?;
             format!(

@@ -21,12 +21,16 @@ pub(super) fn write(out: &mut String, options: &TextOptions, claim: &ClaimRecord
     let target = target(options, claim);
     match &claim.finding {
         Finding::Holds { form: found } => identity(out, options, &target, widest, found),
-        Finding::Undetermined { particular, kernel } => {
-            let letters = words::letters(style, claim, kernel.len());
+        Finding::Undetermined {
+            particular,
+            kernel,
+            shift,
+        } => {
+            let letters = words::letters(style, claim, kernel.len() + shift.iter().len());
             let multiples: Vec<(String, &[FormTerm])> = letters
                 .iter()
                 .cloned()
-                .zip(kernel.iter().map(Vec::as_slice))
+                .zip(kernel.iter().chain(shift).map(Vec::as_slice))
                 .collect();
             let mut products = combination(style, particular, &multiples);
             if !letters.is_empty() {
