@@ -22,4 +22,4 @@ pub use program::{NodeId, Operation, PrimitiveElement, Program, YieldedElement};
 pub use solve::{Observer, Options, Silent, solve};
 pub use source::{base_names, hash_of, model_of};
 pub use strategy::{Method, Solver};
-pub use verify::{CheckOutcome, ClaimCheck, Verification, through_of, verify};
+pub use verify::{CheckOutcome, ClaimCheck, Verification, verify};

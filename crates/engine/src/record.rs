@@ -27,6 +27,8 @@ pub struct ResultRecord {
 pub struct SpecRecord {
     /// The title, if the spec has one.
     pub title: Option<String>,
+    /// The bound on the sum of the indices of open sweeps, if one was given.
+    pub through: Option<i64>,
     /// Hash of all source files, in hexadecimal.
     pub blake3: String,
     /// The source files: the spec first, then what it includes.

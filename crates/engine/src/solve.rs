@@ -159,7 +159,7 @@ impl<'a> Run<'a> {
         });
         ResultRecord {
             program: concat!("linform ", env!("CARGO_PKG_VERSION")).to_owned(),
-            spec: crate::source::spec_record(&self.prepared.model),
+            spec: crate::source::spec_record(&self.prepared.model, self.prepared.through),
             gradings,
             primitives: primitives.collect(),
             claims: found

@@ -4,7 +4,7 @@ use crate::record::{SourceRecord, SpecRecord};
 use linform_spec::{Failure, Model};
 
 /// The record of the sources of a model.
-pub(crate) fn spec_record(model: &Model) -> SpecRecord {
+pub(crate) fn spec_record(model: &Model, through: Option<i64>) -> SpecRecord {
     let sources: Vec<SourceRecord> = model
         .sources
         .iter()
@@ -15,6 +15,7 @@ pub(crate) fn spec_record(model: &Model) -> SpecRecord {
         .collect();
     SpecRecord {
         title: model.title.clone(),
+        through,
         blake3: hash_of(&sources),
         sources,
     }

@@ -34,7 +34,7 @@ fn export(record: &ResultRecord, target: Target) -> Result<String, Failure> {
     let look = Look { ascii: true };
     let prepared = || {
         let model = model_of(&record.spec).map_err(|failure| spec_failure(&failure, &look))?;
-        unfold(model, linform_engine::through_of(record), &look)
+        unfold(model, record.spec.through, &look)
     };
     Ok(match target {
         Target::Latex => linform_report::latex(record),

@@ -55,7 +55,7 @@ pub(super) struct Output {
 }
 
 impl Output {
-    pub(super) fn into_prepared(self, model: Model) -> Prepared {
+    pub(super) fn into_prepared(self, model: Model, through: Option<i64>) -> Prepared {
         let Output {
             symbols,
             derivatives,
@@ -65,6 +65,7 @@ impl Output {
         } = self;
         Prepared {
             model,
+            through,
             symbols,
             derivatives,
             laws,

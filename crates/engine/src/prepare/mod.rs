@@ -19,6 +19,8 @@ use std::ops::Range;
 pub struct Prepared {
     /// The checked model.
     pub model: Model,
+    /// The bound on the sum of the indices of open sweeps.
+    pub through: Option<i64>,
     /// The names of the symbols in the order of the ring: generators, variable, constants.
     pub symbols: Vec<String>,
     /// For each generator the node of its derivative.
@@ -146,7 +148,7 @@ pub fn prepare(
             Err(error) => Err(vec![build::thread_failure(&error)]),
         }
     })
-    .map(|built| built.into_prepared(model.clone()))
+    .map(|built| built.into_prepared(model.clone(), through))
     .map_err(|diagnostics| Failure {
         sources: model.sources.clone(),
         diagnostics,

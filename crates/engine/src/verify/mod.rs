@@ -71,7 +71,7 @@ impl Verification {
 pub fn verify(record: &ResultRecord, control: &dyn Control) -> Result<Verification, Failure> {
     let prepared = prepare(
         model_of(&record.spec)?,
-        through_of(record),
+        record.spec.through,
         PrepareLimits::default(),
     )?;
     let mut problems = Vec::new();
@@ -104,15 +104,6 @@ pub fn verify(record: &ResultRecord, control: &dyn Control) -> Result<Verificati
         verification.stopped = Some(stop);
     }
     Ok(verification)
-}
-
-/// The bound of the open sweeps of a record's spec: the largest sum of indices that occurs.
-pub fn through_of(record: &ResultRecord) -> Option<i64> {
-    record
-        .claims
-        .iter()
-        .map(|claim| claim.index.values().copied().fold(0, i64::saturating_add))
-        .max()
 }
 
 struct Check<'a> {
