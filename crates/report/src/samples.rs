@@ -179,6 +179,7 @@ pub(crate) fn record() -> ResultRecord {
         program: "linform 0.1.0".to_owned(),
         spec: SpecRecord {
             title: Some("Traces of the Airy kernel".to_owned()),
+            through: None,
             blake3: "ab".repeat(32),
             sources: vec![SourceRecord {
                 path: "airy-traces.toml".to_owned(),

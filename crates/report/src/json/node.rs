@@ -32,6 +32,11 @@ impl Node {
         Node::Unsigned(count as u64)
     }
 
+    /// Integers that are not negative are unsigned, as they are when read.
+    pub(crate) fn integer(value: i64) -> Node {
+        u64::try_from(value).map_or(Node::Signed(value), Node::Unsigned)
+    }
+
     pub(crate) fn list<T>(items: &[T], mut node: impl FnMut(&T) -> Node) -> Node {
         Node::List(items.iter().map(&mut node).collect())
     }

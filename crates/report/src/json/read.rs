@@ -210,6 +210,7 @@ impl Reader {
         self.known(&root, DOCUMENT)?;
         let empty = SpecRecord {
             title: None,
+            through: None,
             blake3: String::new(),
             sources: Vec::new(),
         };
@@ -235,11 +236,15 @@ impl Reader {
     }
 
     fn spec(&mut self, place: Place<'_, '_>) -> Result<SpecRecord, ReadError> {
-        self.known(&place, &["title", "blake3", "sources"])?;
+        self.known(&place, &["title", "blake3", "through", "sources"])?;
         Ok(SpecRecord {
             title: place
                 .optional("title")?
                 .map(|title| title.string())
+                .transpose()?,
+            through: place
+                .optional("through")?
+                .map(|through| through.integer())
                 .transpose()?,
             blake3: self.or_default(&place, "blake3", |_, place| place.string())?,
             sources: self.or_default(&place, "sources", |reader, place| {

@@ -9,10 +9,11 @@ proptest! {
     #![proptest_config(ProptestConfig::with_cases(48))]
 
     #[test]
-    fn a_record_is_read_back_as_it_was_written(claims in vec(claims(), 0..4), title in proptest::option::of(texts())) {
+    fn a_record_is_read_back_as_it_was_written(claims in vec(claims(), 0..4), title in proptest::option::of(texts()), through: Option<i64>) {
         let mut record = samples::record();
         record.claims.extend(claims);
         record.spec.title = title;
+        record.spec.through = through;
         let read = read_json(&json(&record)).unwrap();
         prop_assert_eq!(read.digest, Digest::Agrees);
         prop_assert_eq!(read.record, record);
@@ -103,6 +104,24 @@ fn layout_does_not_matter_for_the_digest() {
     assert_eq!(read_json(&squeezed).unwrap().digest, Digest::Agrees);
     let bom = format!("\u{feff}{text}");
     assert_eq!(read_json(&bom).unwrap().digest, Digest::Agrees);
+}
+
+#[test]
+fn the_bound_of_open_sweeps_stands_before_the_sources() {
+    let mut record = samples::record();
+    assert!(!json(&record).contains("\"through\""));
+    record.spec.through = Some(-12);
+    let text = json(&record);
+    assert!(
+        text.contains(",\n    \"through\": -12,\n    \"sources\": ["),
+        "{text}"
+    );
+    let wrong = text.replace("\"through\": -12", "\"through\": \"12\"");
+    let error = read_json(&wrong).unwrap_err().to_string();
+    assert!(
+        error.starts_with("spec.through: expected an integer"),
+        "{error}"
+    );
 }
 
 const CONTRACT_ONLY: &str = r#"{ "format": "linform-result/1", "program": "linform 0.1.0",

@@ -43,11 +43,20 @@ fn spec(spec: &SpecRecord) -> Node {
             ("text", Node::text(&source.text)),
         ])
     });
-    Node::object([
+    let mut fields = vec![
         ("title", spec.title.as_ref().map_or(Node::Null, Node::text)),
         ("blake3", Node::text(&spec.blake3)),
-        ("sources", sources),
-    ])
+    ];
+    if let Some(through) = spec.through {
+        fields.push(("through", Node::integer(through)));
+    }
+    fields.push(("sources", sources));
+    Node::Object(
+        fields
+            .into_iter()
+            .map(|(name, node)| (name.to_owned(), node))
+            .collect(),
+    )
 }
 
 fn grading(grading: &GradingRecord) -> Node {
@@ -93,10 +102,8 @@ fn form(form: &[FormTerm]) -> Node {
 }
 
 fn claim(claim: &ClaimRecord) -> Node {
-    let index = claim.index.iter().map(|(name, value)| {
-        let value = u64::try_from(*value).map_or(Node::Signed(*value), Node::Unsigned);
-        (name.clone(), value)
-    });
+    let index = claim.index.iter();
+    let index = index.map(|(name, value)| (name.clone(), Node::integer(*value)));
     let found: &[FormTerm] = match &claim.finding {
         Finding::Holds { form } => form,
         _ => &[],
