@@ -5,7 +5,7 @@ use std::io::{Read, Write};
 use std::path::Path;
 
 /// The largest spec that is read.
-pub(crate) const SPEC_BYTES: u64 = 16 << 20;
+pub(crate) const SPEC_BYTES: u64 = 2 << 20;
 /// The largest result that is read.
 pub(crate) const RESULT_BYTES: u64 = 1 << 28;
 
@@ -42,21 +42,52 @@ pub(crate) fn read_text(path: &Path, limit: u64) -> Result<String, String> {
     })
 }
 
+/// Do two paths lead to one file that exists?
+pub(crate) fn is_same(a: &Path, b: &Path) -> bool {
+    match (a.canonicalize(), b.canonicalize()) {
+        (Ok(a), Ok(b)) => a == b,
+        _ => false,
+    }
+}
+
 /// Writes a file by way of a temporary one beside it, so that an interruption leaves the old content.
+///
+/// A link is followed, a device or a pipe is written to as it is, and a file that may not be written is left alone.
 pub(crate) fn write(path: &Path, text: &str) -> Result<(), Failure> {
+    let attempt = || -> std::io::Result<()> {
+        match std::fs::metadata(path) {
+            Ok(metadata) if metadata.is_file() => {
+                // Opening for writing asks for the permission that replacing the file would pass by.
+                std::fs::OpenOptions::new().append(true).open(path)?;
+                replace(&path.canonicalize()?, text)
+            }
+            Ok(_) => std::fs::OpenOptions::new()
+                .write(true)
+                .open(path)?
+                .write_all(text.as_bytes()),
+            Err(error) if error.kind() == std::io::ErrorKind::NotFound => replace(path, text),
+            Err(error) => Err(error),
+        }
+    };
+    attempt().map_err(|error| {
+        // The name of the temporary file would tell the user nothing.
+        let why = error.to_string();
+        let why = why.split(" at path ").next().unwrap_or_default();
+        Failure::files(format!("cannot write {}: {why}", path.display()))
+    })
+}
+
+fn replace(path: &Path, text: &str) -> std::io::Result<()> {
     let folder = match path.parent() {
         Some(parent) if !parent.as_os_str().is_empty() => parent,
         _ => Path::new("."),
     };
-    let attempt = || -> std::io::Result<()> {
-        let mut builder = tempfile::Builder::new();
-        #[cfg(unix)]
-        builder.permissions(std::os::unix::fs::PermissionsExt::from_mode(0o644));
-        let mut file = builder.prefix(".linform-").tempfile_in(folder)?;
-        file.write_all(text.as_bytes())?;
-        file.as_file().sync_all()?;
-        file.persist(path).map_err(|error| error.error)?;
-        Ok(())
-    };
-    attempt().map_err(|error| Failure::files(format!("cannot write {}: {error}", path.display())))
+    let mut builder = tempfile::Builder::new();
+    #[cfg(unix)]
+    builder.permissions(std::os::unix::fs::PermissionsExt::from_mode(0o644));
+    let mut file = builder.prefix(".linform-").tempfile_in(folder)?;
+    file.write_all(text.as_bytes())?;
+    file.as_file().sync_all()?;
+    file.persist(path).map_err(|error| error.error)?;
+    Ok(())
 }

@@ -300,7 +300,7 @@ fn huge_requests_are_refused_at_once() {
         .unwrap();
     let output = linform(&["solve", path.to_str().unwrap()]);
     assert_eq!(code(&output), 4);
-    assert!(stderr(&output).contains("larger than 16 MB"));
+    assert!(stderr(&output).contains("larger than 2 MB"));
 }
 
 #[test]
@@ -384,4 +384,61 @@ fn includes_are_found_beside_the_including_file_and_kept_in_the_result() {
     std::fs::remove_file(folder.path().join("base ring.toml")).unwrap();
     let output = linform(&["verify", result.to_str().unwrap()]);
     assert_eq!(code(&output), 0, "{}{}", stdout(&output), stderr(&output));
+}
+
+#[test]
+fn a_spec_is_not_overwritten_and_a_link_is_followed() {
+    let folder = TempDir::new().unwrap();
+    let path = write_spec(
+        &folder,
+        "mine.toml",
+        "[[claim]]\nname = \"c\"\ntarget = \"q\"\nterms = \"q\"\n",
+    );
+    let before = std::fs::read_to_string(&path).unwrap();
+    assert_eq!(code(&linform(&["solve", &path, "--out", &path])), 2);
+    assert_eq!(std::fs::read_to_string(&path).unwrap(), before);
+    #[cfg(unix)]
+    {
+        let (target, link) = (
+            folder.path().join("target.json"),
+            folder.path().join("link.json"),
+        );
+        std::fs::write(&target, "old").unwrap();
+        std::os::unix::fs::symlink(&target, &link).unwrap();
+        assert_eq!(
+            code(&linform(&["solve", &path, "--out", link.to_str().unwrap()])),
+            0
+        );
+        assert!(
+            std::fs::symlink_metadata(&link)
+                .unwrap()
+                .file_type()
+                .is_symlink()
+        );
+        assert!(
+            std::fs::read_to_string(&target)
+                .unwrap()
+                .contains("linform-result/1")
+        );
+        assert_eq!(code(&linform(&["solve", &path, "--out", "/dev/full"])), 4);
+        assert_eq!(
+            code(&linform(&["solve", &path, "--quiet", "--out", "/dev/null"])),
+            0
+        );
+        assert!(!std::fs::metadata("/dev/null").unwrap().is_file());
+    }
+}
+
+#[test]
+fn unfolding_obeys_the_limits() {
+    let folder = TempDir::new().unwrap();
+    let target = "sum(sum(sum(i*j*k*q for i = 1..1000) for j = 1..1000) for k = 1..1000)";
+    let claims = format!("[[claim]]\nname = \"c\"\ntarget = \"{target}\"\nterms = \"q\"\n");
+    let path = write_spec(&folder, "sums.toml", &claims);
+    let start = std::time::Instant::now();
+    assert_eq!(
+        code(&linform(&["solve", &path, "--time-limit", "500ms"])),
+        3
+    );
+    assert!(start.elapsed().as_secs() < 5);
 }

@@ -17,7 +17,9 @@ mod strategy;
 mod verify;
 
 pub use arithmetic::Arithmetic;
-pub use prepare::{Instance, PrepareLimits, Prepared, TermList, prepare, title};
+pub use prepare::{
+    Instance, PrepareError, PrepareLimits, Prepared, TermList, prepare, prepare_within, title,
+};
 pub use program::{NodeId, Operation, PrimitiveElement, Program, YieldedElement};
 pub use solve::{Observer, Options, Silent, solve};
 pub use source::{base_names, hash_of, model_of};

@@ -436,17 +436,22 @@ fn unique_or_family(
 ) -> Result<Match, Stop> {
     let one = Polynomial::one();
     let columns: Vec<&Polynomial> = std::iter::once(&one).chain(terms.iter().copied()).collect();
-    let zero = Polynomial::zero();
-    let rational = CoefficientKind::Rational;
-    let dependence = match_value(ring, &zero, &columns, rational, solver, control)?;
-    let Match::Family { kernel, .. } = dependence.matched else {
-        let unique = admitted(&coefficients, kind);
-        return Ok(if unique {
+    let equations = Equations::new(&columns, &Polynomial::zero(), split_of(ring, kind));
+    let dependence = equations.solve(solver, control)?;
+    let Outcome::Family { kernel, .. } = dependence.outcome else {
+        return Ok(if admitted(&coefficients, kind) {
             Match::Holds(coefficients)
         } else {
-            Match::DegreeLimit { degree: 0 }
+            Match::OtherCoefficients {
+                coefficients,
+                independence: equations.witness(dependence.independence),
+            }
         });
     };
+    let kernel: Vec<Vec<Fraction>> = kernel
+        .iter()
+        .map(|vector| equations.unscale(vector, true))
+        .collect();
     // Among the dependences that use the 1, one is kept as the shift and subtracted from the others.
     let mut shift: Option<Vec<Fraction>> = None;
     let mut vanishing = Vec::with_capacity(kernel.len());

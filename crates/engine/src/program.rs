@@ -7,6 +7,7 @@
 use crate::arithmetic::Arithmetic;
 use indexmap::IndexSet;
 use linform_scalar::Rational;
+use rustc_hash::FxHashSet;
 
 /// A node of a [`Program`].
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
@@ -180,17 +181,7 @@ impl Program {
 
     /// The nodes on which `roots` depend, themselves included, in the order of the program.
     pub fn needed_for(&self, roots: &[NodeId]) -> Vec<NodeId> {
-        let mut needed = vec![false; self.len()];
-        roots.iter().for_each(|root| needed[root.0] = true);
-        for position in (0..self.len()).rev() {
-            if needed[position] {
-                self.operations[position].for_each_operand(|operand| needed[operand.0] = true);
-            }
-        }
-        (0..self.len())
-            .filter(|&position| needed[position])
-            .map(NodeId)
-            .collect()
+        self.missing_for(roots, |_| false)
     }
 
     /// Evaluates what `roots` need and `values` does not hold yet.
@@ -220,25 +211,25 @@ impl Program {
 
     /// The nodes that have to be evaluated for `roots`, in the order of the program: what a node with a value depends on is
     /// not needed again.
+    ///
+    /// # Complexity
+    ///
+    /// `n log n` for `n` nodes found.
     pub(crate) fn missing_for(
         &self,
         roots: &[NodeId],
         has_value: impl Fn(NodeId) -> bool,
     ) -> Vec<NodeId> {
-        let mut missing = vec![false; self.len()];
-        roots
-            .iter()
-            .for_each(|root| missing[root.0] = !has_value(*root));
-        for position in (0..self.len()).rev() {
-            if missing[position] {
-                self.operations[position]
-                    .for_each_operand(|operand| missing[operand.0] |= !has_value(operand));
+        let mut found: FxHashSet<NodeId> = FxHashSet::default();
+        let mut open: Vec<NodeId> = roots.to_vec();
+        while let Some(node) = open.pop() {
+            if !has_value(node) && found.insert(node) {
+                self.operations[node.0].for_each_operand(|operand| open.push(operand));
             }
         }
-        (0..self.len())
-            .filter(|&position| missing[position])
-            .map(NodeId)
-            .collect()
+        let mut missing: Vec<NodeId> = found.into_iter().collect();
+        missing.sort_unstable();
+        missing
     }
 
     /// Evaluates one node from the values of its operands.

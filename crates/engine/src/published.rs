@@ -2,7 +2,7 @@
 //!
 //! This module shares no code with crate `ring`: polynomials are maps from exponents to `num` rationals.
 
-use linform_scalar::published::{BigInt, BigRational, One, Signed, Zero};
+use linform_scalar::published::{BigInt, BigRational, One, Signed, Zero, gcd, lcm};
 use std::collections::BTreeMap;
 use std::fmt;
 
@@ -56,6 +56,27 @@ impl PublishedPolynomial {
         PublishedPolynomial {
             terms: terms.collect(),
         }
+    }
+
+    /// The least common denominator of the coefficients.
+    fn common_denominator(&self) -> BigInt {
+        self.terms.values().fold(BigInt::one(), |common, value| {
+            lcm(common, value.denom().clone())
+        })
+    }
+
+    /// The rational number by which the polynomial is a primitive integral one with positive leading coefficient.
+    fn content(&self) -> BigRational {
+        let denominator = self.common_denominator();
+        let numerator = self.terms.values().fold(BigInt::zero(), |common, value| {
+            gcd(common, value.numer() * (&denominator / value.denom()))
+        });
+        let content = BigRational::new(numerator, denominator);
+        let negative = self
+            .terms()
+            .next()
+            .is_some_and(|(_, value)| value.is_negative());
+        if negative { -content } else { content }
     }
 
     /// Number of terms.
@@ -141,20 +162,23 @@ impl Coefficient {
 }
 
 impl fmt::Display for Coefficient {
-    /// `1/3*t`, or `(t^2 + 1)/(2*t)` for a quotient.
+    /// `1/3*t`; a quotient with integral numerator and denominator, `(t^2 + 1)/(2*t)`.
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        let numerator = self.numerator.text(&self.names);
         if self.is_polynomial() {
-            return f.write_str(&numerator);
+            return f.write_str(&self.numerator.text(&self.names));
         }
-        let denominator = self.denominator.text(&self.names);
-        let wrap = |text: String, simple: bool| if simple { text } else { format!("({text})") };
-        let simple = self.denominator.len() == 1 && !denominator.contains(['*', '/']);
+        let clear = BigRational::from_integer(self.numerator.common_denominator());
+        let numerator = self.numerator.divided_by(&clear.recip()).text(&self.names);
+        let denominator = self.denominator.divided_by(&clear.recip());
+        let simple = denominator.len() == 1;
+        let denominator = denominator.text(&self.names);
+        let wrap = |text: String, bare: bool| if bare { text } else { format!("({text})") };
+        let bare = simple && !denominator.contains(['*', '/', '-']);
         write!(
             f,
             "{}/{}",
             wrap(numerator, self.numerator.len() <= 1),
-            wrap(denominator, simple)
+            wrap(denominator, bare)
         )
     }
 }
@@ -204,16 +228,16 @@ impl Coefficient {
         let Some((exponents, leading)) = denominator.terms().next() else {
             return Err(wrong("the denominator is 0"));
         };
-        if denominator.len() == 1 && exponents.iter().all(|&exponent| exponent == 0) {
-            // `t/3` is a polynomial.
-            let numerator = numerator.divided_by(leading);
-            let denominator = PublishedPolynomial::constant(names.len(), BigRational::one());
-            return Ok(Coefficient {
-                names: names.clone(),
-                numerator,
-                denominator,
-            });
-        }
+        // `t/3` is a polynomial; other denominators become integral and primitive, with positive leading coefficient.
+        let factor = if denominator.len() == 1 && exponents.iter().all(|&exponent| exponent == 0) {
+            leading.clone()
+        } else {
+            denominator.content()
+        };
+        let (numerator, denominator) = (
+            numerator.divided_by(&factor),
+            denominator.divided_by(&factor),
+        );
         Ok(Coefficient {
             names: names.clone(),
             numerator,

@@ -185,6 +185,10 @@ impl<'a> Run<'a> {
         while rest.peek().is_some() {
             rayon::in_place_scope(|scope| {
                 while let Some(&position) = rest.peek() {
+                    if let Err(stop) = self.control.proceed() {
+                        self.leave(rest.by_ref(), stop, found);
+                        return;
+                    }
                     let roots = roots_of(&self.prepared.instances[position]);
                     let open = |claim: usize| found.records[claim].get().is_none();
                     if yielding_claims(self.prepared, &roots).into_iter().any(open) {
@@ -195,6 +199,14 @@ impl<'a> Run<'a> {
                     scope.spawn(move |_| self.decide_into(ring, position, found));
                 }
             });
+        }
+    }
+
+    /// Records the rest as unsettled.
+    fn leave(&self, rest: impl Iterator<Item = usize>, stop: Stop, found: &Found) {
+        let finding = unsettled(&stop.into());
+        for position in rest {
+            let _ = found.records[position].set(self.undecided(position, finding.clone()));
         }
     }
 

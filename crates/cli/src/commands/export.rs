@@ -7,6 +7,7 @@ use crate::{files, output};
 use linform_engine::model_of;
 use linform_engine::record::ResultRecord;
 use linform_report::{Digest, TextOptions};
+use linform_scalar::Unlimited;
 
 pub(crate) fn run(command: &Export) -> Result<u8, Failure> {
     let text = files::read(&command.result, files::RESULT_BYTES)?;
@@ -34,7 +35,7 @@ fn export(record: &ResultRecord, target: Target) -> Result<String, Failure> {
     let look = Look { ascii: true };
     let prepared = || {
         let model = model_of(&record.spec).map_err(|failure| spec_failure(&failure, &look))?;
-        unfold(model, record.spec.through, &look)
+        unfold(model, record.spec.through, &look, &Unlimited)
     };
     Ok(match target {
         Target::Latex => linform_report::latex(record),

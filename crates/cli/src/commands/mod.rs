@@ -6,10 +6,11 @@ pub(crate) mod solve;
 pub(crate) mod verify;
 
 use crate::arguments::{Look, Work};
-use crate::exit::Failure;
+use crate::exit::{self, Failure};
 use crate::{diagnostics, files, output};
 use linform_engine::record::ResultRecord;
-use linform_engine::{PrepareLimits, Prepared, prepare};
+use linform_engine::{PrepareError, PrepareLimits, Prepared, prepare_within};
+use linform_scalar::Control;
 use linform_spec::Model;
 use std::path::Path;
 
@@ -39,9 +40,19 @@ fn load_model(path: &Path, look: &Look) -> Result<Model, Failure> {
         .map_err(|failure| spec_failure(&failure, look))
 }
 
-fn unfold(model: Model, through: Option<i64>, look: &Look) -> Result<Prepared, Failure> {
-    prepare(model, through, PrepareLimits::default())
-        .map_err(|failure| spec_failure(&failure, look))
+fn unfold(
+    model: Model,
+    through: Option<i64>,
+    look: &Look,
+    control: &dyn Control,
+) -> Result<Prepared, Failure> {
+    prepare_within(model, through, PrepareLimits::default(), control).map_err(|error| match error {
+        PrepareError::Mistakes(failure) => spec_failure(&failure, look),
+        PrepareError::Stopped(stop) => Failure {
+            code: exit::LIMIT,
+            text: format!("{stop} while the definitions were unfolded; nothing was decided"),
+        },
+    })
 }
 
 /// Keeps the claims that a pattern admits; it is a mistake if there are none.

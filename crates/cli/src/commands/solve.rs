@@ -16,13 +16,27 @@ pub(crate) fn run(command: &Solve) -> Result<u8, Failure> {
             "--out takes the result of one spec: give one spec, or leave --out away",
         ));
     }
+    if command.format == Some(Format::Json) && command.specs.len() > 1 {
+        return Err(Failure::wrong(
+            "JSON holds the result of one spec: give one spec, or another --format",
+        ));
+    }
+    if let Some(out) = &command.out
+        && let Some(spec) = command.specs.iter().find(|spec| files::is_same(spec, out))
+    {
+        let spec = spec.display();
+        return Err(Failure::wrong(format!(
+            "--out would overwrite the spec {spec}: choose another name"
+        )));
+    }
     use_threads(&command.work)?;
+    let watch = Watch::start(command.work.time_limit, command.work.memory_limit);
     // All specs are read before the first is decided: a mistake in the last one shows at once.
     let mut ready = Vec::new();
     let mut worst = None;
     for path in &command.specs {
         let prepared = load_model(path, &command.look)
-            .and_then(|model| unfold(model, command.through, &command.look));
+            .and_then(|model| unfold(model, command.through, &command.look, &watch));
         match prepared.and_then(|prepared| {
             selected(&prepared, command, path).map(|wanted| (prepared, wanted))
         }) {
@@ -36,7 +50,6 @@ pub(crate) fn run(command: &Solve) -> Result<u8, Failure> {
     if let Some(code) = worst {
         return Ok(code);
     }
-    let watch = Watch::start(command.work.time_limit, command.work.memory_limit);
     let mut code = exit::AS_EXPECTED;
     for (prepared, wanted) in &ready {
         let record = decide(prepared, wanted, command, &watch);

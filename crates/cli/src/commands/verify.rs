@@ -22,6 +22,14 @@ pub(crate) fn run(command: &Verify) -> Result<u8, Failure> {
             .iter()
             .map(|field| format!("the result does not hold {field}")),
     );
+    if read.record.claims.is_empty() {
+        verification
+            .problems
+            .push("the result holds no claim".to_owned());
+    }
+    for note in &read.notes {
+        output::message(&format!("note: {note}"));
+    }
     match read.digest {
         Digest::Agrees => {}
         Digest::Absent => output::message(
@@ -42,8 +50,8 @@ pub(crate) fn run(command: &Verify) -> Result<u8, Failure> {
 
 /// What a confirmation means, and what it does not.
 const CONFIRMED: &str = "\
-The result is confirmed: the spec in it was read again, its definitions were expanded in an arithmetic that
-takes no part in finding answers, and every statement was checked by substitution.
+What the result decides is confirmed: the spec in it was read again, its definitions were expanded in an
+arithmetic that takes no part in finding answers, and every verdict was checked by substitution.
 Taken on trust: the reader of specs, and that the rules in the spec are the ones meant.
 ";
 
@@ -86,16 +94,23 @@ fn describe(verification: &Verification) -> String {
         "{confirmed} confirmed, {rejected} rejected, {open} open"
     );
     if verification.missing > 0 {
+        let noun = if verification.missing == 1 {
+            "claim"
+        } else {
+            "claims"
+        };
         let _ = writeln!(
             text,
-            "{} claims of the spec are not in this result",
+            "not in this result: {} {noun} of the spec",
             verification.missing
         );
     }
-    text.push_str(if verification.is_confirmed() {
-        CONFIRMED
-    } else {
-        "The result is not confirmed.\n"
-    });
+    match (verification.is_confirmed(), confirmed) {
+        (false, _) => text.push_str("The result is not confirmed.\n"),
+        (true, 0) => {
+            text.push_str("The result decides nothing, so there was nothing to confirm.\n")
+        }
+        (true, _) => text.push_str(CONFIRMED),
+    }
     text
 }

@@ -3,6 +3,7 @@
 use super::{Instance, PrepareLimits, Prepared, TermList};
 use crate::program::{NodeId, Operation, Program};
 use crate::record::KnownBy;
+use linform_scalar::{Control, Stop};
 use linform_spec::{
     Claim, Diagnostic, Environment, Expr, Label, Model, Span, Target, Terms, substitute, text_of,
 };
@@ -35,6 +36,9 @@ pub(super) enum ElementState {
 pub(super) struct Builder<'m> {
     pub(super) model: &'m Model,
     pub(super) limits: PrepareLimits,
+    control: &'m dyn Control,
+    steps: usize,
+    stopped: Option<Stop>,
     pub(super) program: Program,
     pub(super) symbols: Vec<String>,
     pub(super) elements: FxHashMap<ElementKey, ElementState>,
@@ -75,16 +79,23 @@ impl Output {
     }
 }
 
-pub(super) fn thread_failure(error: &std::io::Error) -> Diagnostic {
+/// Why nothing was built.
+pub(super) enum Unbuilt {
+    Mistakes(Vec<Diagnostic>),
+    Stopped(Stop),
+}
+
+/// A failure without a place in the spec.
+pub(super) fn plain_failure(message: String) -> Diagnostic {
     Diagnostic {
-        message: format!("the program could not reserve memory to unfold the definitions: {error}"),
+        message,
         labels: Vec::new(),
-        help: Some("free some memory, or raise the limit on the address space".to_owned()),
+        help: None,
     }
 }
 
 impl<'m> Builder<'m> {
-    pub(super) fn new(model: &'m Model, limits: PrepareLimits) -> Self {
+    pub(super) fn new(model: &'m Model, limits: PrepareLimits, control: &'m dyn Control) -> Self {
         let ring = &model.ring;
         let symbols = ring
             .generators
@@ -96,6 +107,9 @@ impl<'m> Builder<'m> {
         Builder {
             model,
             limits,
+            control,
+            steps: 0,
+            stopped: None,
             program: Program::default(),
             symbols,
             elements: FxHashMap::default(),
@@ -106,7 +120,7 @@ impl<'m> Builder<'m> {
         }
     }
 
-    pub(super) fn run(mut self, through: Option<i64>) -> Result<Output, Vec<Diagnostic>> {
+    pub(super) fn run(mut self, through: Option<i64>) -> Result<Output, Unbuilt> {
         let model = self.model;
         let derivatives: Vec<Built> = model
             .ring
@@ -120,6 +134,9 @@ impl<'m> Builder<'m> {
         for (position, claim) in model.claims.iter().enumerate() {
             // Every instance is tried even after a mistake in another, so that one run shows all mistakes.
             let _ = self.claim(position, claim, through);
+            if self.stopped.is_some() || self.steps > self.limits.steps {
+                break;
+            }
             if self.program.len() > self.limits.nodes
                 || self.instances.len() > self.limits.instances
             {
@@ -127,14 +144,17 @@ impl<'m> Builder<'m> {
                 break;
             }
         }
+        if let Some(stop) = self.stopped {
+            return Err(Unbuilt::Stopped(stop));
+        }
         if !self.diagnostics.is_empty() {
-            return Err(self.diagnostics);
+            return Err(Unbuilt::Mistakes(self.diagnostics));
         }
         let (Ok(derivatives), Ok(laws)) = (
             derivatives.into_iter().collect::<Built<_>>(),
             laws.into_iter().collect::<Built<_>>(),
         ) else {
-            return Err(self.diagnostics);
+            return Err(Unbuilt::Mistakes(self.diagnostics));
         };
         let (symbols, program, instances) = (self.symbols, self.program, self.instances);
         Ok(Output {
@@ -144,6 +164,33 @@ impl<'m> Builder<'m> {
             program,
             instances,
         })
+    }
+
+    /// Counts a visited expression, and asks from time to time whether the work may go on.
+    pub(super) fn step(&mut self, span: &Span) -> Built<()> {
+        const PERIOD: usize = 1 << 12;
+        self.steps += 1;
+        if self.stopped.is_some() {
+            return Err(Reported);
+        }
+        if self.steps.is_multiple_of(PERIOD)
+            && let Err(stop) = self.control.proceed()
+        {
+            self.stopped = Some(stop);
+            return Err(Reported);
+        }
+        if self.steps > self.limits.steps {
+            if self.steps == self.limits.steps + 1 {
+                let message = format!(
+                    "the definitions unfold to more than {} expressions",
+                    self.limits.steps
+                );
+                let help = "let sums and sweeps run over fewer indices".to_owned();
+                self.report(message, *span, "the limit was passed here", Some(help));
+            }
+            return Err(Reported);
+        }
+        Ok(())
     }
 
     fn report_size(&mut self, claim: &Claim) {
@@ -206,6 +253,8 @@ impl<'m> Builder<'m> {
         for index in self.pass(instances)? {
             if self.program.len() > self.limits.nodes
                 || self.instances.len() > self.limits.instances
+                || self.stopped.is_some()
+                || self.steps > self.limits.steps
             {
                 return Err(Reported);
             }

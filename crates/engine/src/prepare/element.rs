@@ -13,10 +13,8 @@ pub(super) fn element_text(family: &str, indices: &[i64]) -> String {
 impl Builder<'_> {
     /// The node of a family element; `place` asked for it.
     pub(super) fn element(&mut self, family: &str, indices: &[i64], place: &Span) -> Built {
-        let given = (family.to_owned(), indices.to_vec());
-        // An element that a claim yields is entered by that claim, under the indices of its pattern.
-        if let Some(ElementState::Done(node)) = self.elements.get(&given) {
-            return Ok(*node);
+        if let Some(node) = self.yielded(family, indices) {
+            return Ok(node);
         }
         let model = self.model;
         let Some(definition) = model.families.get(family) else {

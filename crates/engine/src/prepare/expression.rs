@@ -31,6 +31,7 @@ impl Builder<'_> {
     /// The node of an expression in which no index variable is left.
     pub(super) fn node_of(&mut self, expression: &Expr) -> Built {
         let span = &expression.span;
+        self.step(span)?;
         match &expression.kind {
             ExprKind::Number(value) => Ok(self.number(value.clone().into())),
             ExprKind::Name { base, primes } => self.name(base, *primes, span),

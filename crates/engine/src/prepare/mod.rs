@@ -11,6 +11,7 @@ mod yields;
 
 use crate::program::{NodeId, Program};
 use crate::record::KnownBy;
+use linform_scalar::{Control, Stop, Unlimited};
 use linform_spec::{Environment, Failure, Model};
 use std::ops::Range;
 
@@ -110,6 +111,8 @@ pub struct PrepareLimits {
     pub nodes: usize,
     /// The deepest chain of family elements that need one another.
     pub depth: usize,
+    /// The largest number of expressions that are visited on the way.
+    pub steps: usize,
 }
 
 impl Default for PrepareLimits {
@@ -118,8 +121,18 @@ impl Default for PrepareLimits {
             instances: 200_000,
             nodes: 3_000_000,
             depth: 10_000,
+            steps: 30_000_000,
         }
     }
+}
+
+/// Why a model was not unfolded.
+#[derive(Clone, Debug)]
+pub enum PrepareError {
+    /// Mistakes in the spec.
+    Mistakes(Failure),
+    /// A limit.
+    Stopped(Stop),
 }
 
 /// Unfolds a model; `through` bounds the sum of the indices of open sweeps.
@@ -130,27 +143,59 @@ impl Default for PrepareLimits {
 ///
 /// # Complexity
 ///
-/// Linear in the number of nodes of the program.
+/// Linear in the number of expressions visited.
 pub fn prepare(
     model: Model,
     through: Option<i64>,
     limits: PrepareLimits,
 ) -> Result<Prepared, Failure> {
+    let sources = model.sources.clone();
+    prepare_within(model, through, limits, &Unlimited).map_err(|error| match error {
+        PrepareError::Mistakes(failure) => failure,
+        PrepareError::Stopped(stop) => Failure {
+            sources,
+            diagnostics: vec![build::plain_failure(stop.to_string())],
+        },
+    })
+}
+
+/// As [`prepare`], under a control.
+///
+/// # Errors
+///
+/// The mistakes, or the limit that ended the work.
+pub fn prepare_within(
+    model: Model,
+    through: Option<i64>,
+    limits: PrepareLimits,
+    control: &dyn Control,
+) -> Result<Prepared, PrepareError> {
     // Definitions may need one another in chains of thousands of elements, each some calls deep.
     const STACK: usize = 1 << 30;
     let worker = std::thread::Builder::new().stack_size(STACK);
-    std::thread::scope(|scope| {
-        let task = worker.spawn_scoped(scope, || build::Builder::new(&model, limits).run(through));
+    let built = std::thread::scope(|scope| {
+        let task = worker.spawn_scoped(scope, || {
+            build::Builder::new(&model, limits, control).run(through)
+        });
         match task.map(|handle| handle.join()) {
-            Ok(Ok(Ok(built))) => Ok(built),
-            Ok(Ok(Err(diagnostics))) => Err(diagnostics),
+            Ok(Ok(built)) => built,
             Ok(Err(panic)) => std::panic::resume_unwind(panic),
-            Err(error) => Err(vec![build::thread_failure(&error)]),
+            Err(error) => {
+                let message = format!(
+                    "the program could not reserve memory to unfold the definitions: {error}"
+                );
+                Err(build::Unbuilt::Mistakes(vec![build::plain_failure(
+                    message,
+                )]))
+            }
         }
-    })
-    .map(|built| built.into_prepared(model.clone(), through))
-    .map_err(|diagnostics| Failure {
-        sources: model.sources.clone(),
-        diagnostics,
-    })
+    });
+    match built {
+        Ok(built) => Ok(built.into_prepared(model, through)),
+        Err(build::Unbuilt::Stopped(stop)) => Err(PrepareError::Stopped(stop)),
+        Err(build::Unbuilt::Mistakes(diagnostics)) => Err(PrepareError::Mistakes(Failure {
+            sources: model.sources,
+            diagnostics,
+        })),
+    }
 }

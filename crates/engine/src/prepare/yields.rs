@@ -2,7 +2,7 @@
 
 use super::build::{Builder, Built, ElementState, Reported};
 use super::element::element_text;
-use crate::program::{Operation, YieldedElement};
+use crate::program::{NodeId, Operation, YieldedElement};
 use linform_spec::{Claim, Environment, Pattern, Span};
 
 impl Builder<'_> {
@@ -31,6 +31,12 @@ impl Builder<'_> {
                     Some(help),
                 ));
             };
+            if self.is_defined(&item.family, &indices) {
+                let name = element_text(&item.family, &indices);
+                let help = "give the new element another index or another family".to_owned();
+                let message = format!("`{name}` is defined already");
+                return Err(self.report(message, item.span, "defined again here", Some(help)));
+            }
             let terms = self.term_list(&item.terms, index, None)?;
             let found = match self.instances[instance].alternatives.as_slice() {
                 [list] => list.nodes.len(),
@@ -60,6 +66,35 @@ impl Builder<'_> {
                 .insert((item.family.clone(), indices), ElementState::Done(node));
         }
         Ok(())
+    }
+
+    /// Has the element a definition, by a rule or by an earlier claim?
+    fn is_defined(&self, family: &str, indices: &[i64]) -> bool {
+        let by_rule = self.model.families.get(family);
+        by_rule.is_some_and(|definition| definition.resolve(indices).is_some())
+            || self.yielded(family, indices).is_some()
+    }
+
+    /// The node of an element that a claim defined; those of a symmetric family under any order of the indices.
+    pub(super) fn yielded(&self, family: &str, indices: &[i64]) -> Option<NodeId> {
+        let find = |indices: &[i64]| match self.elements.get(&(family.to_owned(), indices.to_vec()))
+        {
+            Some(ElementState::Done(node)) => Some(*node),
+            _ => None,
+        };
+        if !self
+            .model
+            .families
+            .get(family)
+            .is_some_and(|definition| definition.symmetric)
+        {
+            return find(indices);
+        }
+        let mut sorted = indices.to_vec();
+        sorted.sort_unstable();
+        let rising = find(&sorted);
+        sorted.reverse();
+        find(indices).or(rising).or_else(|| find(&sorted))
     }
 
     fn open_yield(&mut self, span: &Span) -> Reported {

@@ -4,11 +4,11 @@ use super::arithmetic::CheckError;
 use super::expansion::Expansion;
 use super::{Check, CheckOutcome};
 use crate::prepare::{Instance, Prepared};
-use crate::program::Operation;
+use crate::program::{NodeId, Operation};
 use crate::published::{Coefficient, PublishedPolynomial, monomial_text};
 use crate::record::{
     CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, GradingRecord,
-    IndependenceRecord, KnownBy, Refutation,
+    IndependenceRecord, KnownBy, PrimitiveRecord, Refutation, SystemRecord,
 };
 use linform_scalar::published::{BigInt, Zero};
 use linform_scalar::{PrimeField, SplitMix};
@@ -90,11 +90,12 @@ impl Check<'_> {
                 "the multiplied equations add up to 0 on the left and to something else on the right"
             }
             Finding::Refuted(Refutation::OtherCoefficients { form, independence }) => {
-                if check_kind(form, kind).is_ok() || kind == CoefficientKind::Rational {
+                if kind == CoefficientKind::Rational || self.all_polynomial(form) {
                     return wrong("the coefficients are of the kind that the claim admits");
                 }
                 self.check_form(claim, form, &compared)?;
-                self.check_independence(independence, &compared)?;
+                self.check_unique(&compared)?;
+                self.check_independence(independence, &compared, true)?;
                 "the rational form was substituted, and a determinant shows that it is the only one"
             }
             Finding::Refuted(Refutation::NotAPrimitive {
@@ -103,7 +104,7 @@ impl Check<'_> {
                 independence,
             }) => {
                 self.check_no_primitive(claim, coefficients, derivatives, &compared)?;
-                self.check_independence(independence, &compared)?;
+                self.check_independence(independence, &compared, false)?;
                 "the only coefficients that match the derivative are not those of a primitive"
             }
             Finding::Unsettled(_) => return Ok(CheckOutcome::Open),
@@ -145,9 +146,18 @@ impl Check<'_> {
             .iter()
             .map(|node| self.value(*node))
             .collect::<Result<Vec<_>, _>>()?;
-        let by_derivative = Self::by_derivative(claim);
-        let varying =
-            prepared.variable().is_some() && claim.coefficients != CoefficientKind::Constant;
+        self.compare(right, terms, Self::by_derivative(claim), claim.coefficients)
+    }
+
+    fn compare(
+        &self,
+        right: Expansion,
+        terms: Vec<Expansion>,
+        by_derivative: bool,
+        kind: CoefficientKind,
+    ) -> Result<Compared, CheckError> {
+        let prepared = self.arithmetic.prepared;
+        let varying = prepared.variable().is_some() && kind != CoefficientKind::Constant;
         let mut columns = Vec::new();
         for term in &terms {
             if by_derivative {
@@ -157,7 +167,7 @@ impl Check<'_> {
                 columns.push(term.clone());
             }
         }
-        let split = match claim.coefficients {
+        let split = match kind {
             CoefficientKind::Constant => prepared.constants().start,
             CoefficientKind::Polynomial | CoefficientKind::Rational => prepared.generators(),
         };
@@ -174,6 +184,15 @@ impl Check<'_> {
         let Some(system) = &claim.system else {
             return wrong("the shape of the system is missing");
         };
+        self.check_system(system, compared)
+    }
+
+    fn check_system(&self, system: &SystemRecord, compared: &Compared) -> Result<(), CheckError> {
+        if system.method != "matching"
+            || !["fraction-free", "modular"].contains(&system.solver.as_str())
+        {
+            return wrong("the method is not one that this program has");
+        }
         let split = compared.split;
         let all = compared.columns.iter().chain([&compared.right]);
         let monomials: BTreeSet<Vec<u32>> = all
@@ -275,6 +294,53 @@ impl Check<'_> {
         Ok(())
     }
 
+    /// Are all coefficients polynomial, whatever common factors numerator and denominator have?
+    fn all_polynomial(&self, form: &[FormTerm]) -> bool {
+        form.iter().all(|FormTerm { coefficient, .. }| {
+            let numerator = self.arithmetic.lift(&coefficient.numerator);
+            self.arithmetic
+                .lift(&coefficient.denominator)
+                .divides(&numerator)
+        })
+    }
+
+    /// A primitive in the record: its element exists, its system has the shape stated, its form is right and the only one.
+    pub(super) fn primitive(&mut self, primitive: &PrimitiveRecord) -> Result<(), CheckError> {
+        let program = &self.arithmetic.prepared.program;
+        let name = &primitive.element;
+        let node = (0..program.len())
+            .map(NodeId)
+            .find(|node| match program.operation(*node) {
+                Operation::Primitive { primitive, .. } => {
+                    program.primitives()[*primitive].name == *name
+                }
+                _ => false,
+            });
+        let Some(node) = node else {
+            return wrong(format!("the claims need no element `{name}`"));
+        };
+        let Operation::Primitive {
+            derivative, terms, ..
+        } = program.operation(node)
+        else {
+            return wrong(format!("the claims need no element `{name}`"));
+        };
+        self.value(node)?;
+        let right = self.value(*derivative)?;
+        let terms = terms
+            .iter()
+            .map(|term| self.value(*term))
+            .collect::<Result<Vec<_>, _>>()?;
+        let compared = self.compare(right, terms, true, CoefficientKind::Polynomial)?;
+        let named = |error| match error {
+            CheckError::Wrong(why) => CheckError::Wrong(format!("`{name}`: {why}")),
+            stop => stop,
+        };
+        self.check_unique(&compared).map_err(named)?;
+        self.check_system(&primitive.system, &compared)
+            .map_err(named)
+    }
+
     /// Is the form the only one?
     fn check_unique(&self, compared: &Compared) -> Result<(), CheckError> {
         let columns: Vec<&Expansion> = compared.columns.iter().collect();
@@ -370,6 +436,13 @@ impl Check<'_> {
             }
             Ok(sum)
         };
+        let mut occurring: BTreeSet<String> = BTreeSet::new();
+        for element in compared.columns.iter().chain([&compared.right]) {
+            occurring.extend(self.split_rows(element, compared.split).into_keys());
+        }
+        if !rows.iter().all(|row| occurring.contains(&row.monomial)) {
+            return wrong("the certificate names an equation that the system does not have");
+        }
         for column in &compared.columns {
             if !combine(column)?.is_empty() {
                 return wrong("the multiplied equations do not add up to 0 on the left");
@@ -442,42 +515,61 @@ impl Check<'_> {
         wrong("the coefficients are those of a primitive")
     }
 
-    /// The determinant of the square block on the given rows must not vanish modulo the prime at the point.
+    /// The determinant of the square block on the given rows must not vanish modulo the prime at the point. For the form of a
+    /// target known by its derivative the terms and 1 may serve as columns instead of the pairs.
     fn check_independence(
         &self,
         independence: &IndependenceRecord,
         compared: &Compared,
+        of_the_form: bool,
     ) -> Result<(), CheckError> {
-        let IndependenceRecord { rows, prime, point } = independence;
-        if rows.len() != compared.columns.len()
-            || *prime < 3
-            || *prime >= 1 << 62
-            || PrimeField::new(*prime).is_none()
-        {
-            return wrong("the witness of uniqueness has the wrong shape");
+        let IndependenceRecord { rows, prime, .. } = independence;
+        if *prime < 3 || *prime >= 1 << 62 || PrimeField::new(*prime).is_none() {
+            return wrong("the witness of uniqueness has no prime");
         }
+        let pairs: Vec<&Expansion> = compared.columns.iter().collect();
+        if rows.len() == pairs.len() && self.is_regular(independence, &pairs, compared.split) {
+            return Ok(());
+        }
+        let one = self.arithmetic.one();
+        let terms: Vec<&Expansion> = std::iter::once(&one).chain(&compared.terms).collect();
+        if of_the_form
+            && compared.paired
+            && rows.len() == terms.len()
+            && self.is_regular(independence, &terms, compared.split)
+        {
+            return Ok(());
+        }
+        wrong("the determinant that should show uniqueness vanishes, or has the wrong shape")
+    }
+
+    /// Is the square block of the columns on the rows of the witness regular?
+    fn is_regular(
+        &self,
+        independence: &IndependenceRecord,
+        columns: &[&Expansion],
+        split: usize,
+    ) -> bool {
+        let IndependenceRecord { rows, prime, point } = independence;
         let names = &self.arithmetic.prepared.symbols;
         let place: Vec<u64> = names
             .iter()
             .map(|name| point.get(name).copied().unwrap_or(0))
             .collect();
-        let mut matrix = vec![vec![0u64; compared.columns.len()]; rows.len()];
-        for (column, element) in compared.columns.iter().enumerate() {
-            let entries = self.split_rows(element, compared.split);
+        let mut matrix = vec![vec![0u64; columns.len()]; rows.len()];
+        for (column, element) in columns.iter().enumerate() {
+            let entries = self.split_rows(element, split);
             for (row, monomial) in rows.iter().enumerate() {
                 let Some(entry) = entries.get(monomial) else {
                     continue;
                 };
                 match entry.residue(*prime, &place) {
                     Some(value) => matrix[row][column] = value,
-                    None => return wrong("the prime of the witness divides a denominator"),
+                    None => return false,
                 }
             }
         }
-        if rank_modulo(matrix.into_iter(), *prime) < rows.len() {
-            return wrong("the determinant that should show uniqueness vanishes");
-        }
-        Ok(())
+        rank_modulo(matrix.into_iter(), *prime) == rows.len()
     }
 }
 

@@ -185,6 +185,38 @@ impl Expansion {
         Ok(Expansion { terms, denominator }.reduced())
     }
 
+    /// Does this divide another polynomial? Long division by the lexicographically leading term, as in handbooks; meant for
+    /// the small denominators of coefficients.
+    pub(super) fn divides(&self, other: &Self) -> bool {
+        let leading = |value: &Expansion| value.terms.keys().max().cloned();
+        let Some(own) = leading(self) else {
+            return other.is_empty();
+        };
+        let mut rest = other.clone();
+        while let Some(top) = leading(&rest) {
+            let exponents: Option<Box<[u32]>> = top
+                .iter()
+                .zip(&own)
+                .map(|(e, f)| e.checked_sub(*f))
+                .collect();
+            let Some(exponents) = exponents else {
+                return false;
+            };
+            // The leading terms of `rest` and of the multiple subtracted are equal, so the loop comes to an end.
+            let a = BigRational::new(rest.terms[&top].clone(), rest.denominator.clone());
+            let b = BigRational::new(self.terms[&own].clone(), self.denominator.clone());
+            let ratio = a / b;
+            let mut factor = Expansion {
+                denominator: ratio.denom().clone(),
+                ..Self::default()
+            };
+            add_to(&mut factor.terms, exponents, ratio.numer().clone());
+            let Ok(multiple) = self.times::<std::convert::Infallible>(&factor, &mut || Ok(()));
+            rest = rest.minus(&multiple);
+        }
+        true
+    }
+
     /// The derivative, given those of the symbols (nothing for a symbol whose derivative is 0).
     pub(super) fn derivative<'e, E>(
         &self,

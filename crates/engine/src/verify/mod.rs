@@ -9,7 +9,7 @@ mod arithmetic;
 mod claim;
 mod expansion;
 
-use crate::prepare::{PrepareLimits, prepare};
+use crate::prepare::{PrepareError, PrepareLimits, prepare_within};
 use crate::program::NodeId;
 use crate::record::{ClaimRecord, KnownBy, ResultRecord, Verdict};
 use crate::source::{hash_of, model_of};
@@ -69,11 +69,19 @@ impl Verification {
 ///
 /// The spec inside the record cannot be read.
 pub fn verify(record: &ResultRecord, control: &dyn Control) -> Result<Verification, Failure> {
-    let prepared = prepare(
-        model_of(&record.spec)?,
-        record.spec.through,
-        PrepareLimits::default(),
-    )?;
+    let (model, limits) = (model_of(&record.spec)?, PrepareLimits::default());
+    let prepared = match prepare_within(model, record.spec.through, limits, control) {
+        Ok(prepared) => prepared,
+        Err(PrepareError::Mistakes(failure)) => return Err(failure),
+        Err(PrepareError::Stopped(stop)) => {
+            return Ok(Verification {
+                problems: Vec::new(),
+                claims: Vec::new(),
+                missing: 0,
+                stopped: Some(stop),
+            });
+        }
+    };
     let mut problems = Vec::new();
     let hash = hash_of(&record.spec.sources);
     if hash != record.spec.blake3 {
@@ -151,6 +159,20 @@ impl Check<'_> {
             });
         }
         verification.missing = seen.iter().filter(|seen| !**seen).count();
+        self.check_primitives(verification)?;
+        Ok(())
+    }
+
+    /// Every recorded primitive, also one that no claim in the record needs.
+    fn check_primitives(&mut self, verification: &mut Verification) -> Result<(), Stop> {
+        let record = self.arithmetic.record;
+        for primitive in &record.primitives {
+            match self.primitive(primitive) {
+                Ok(()) => {}
+                Err(CheckError::Stop(stop)) => return Err(stop),
+                Err(CheckError::Wrong(why)) => verification.problems.push(why),
+            }
+        }
         Ok(())
     }
 
@@ -195,7 +217,7 @@ impl Check<'_> {
         Ok(())
     }
 
-    /// Target and terms of a claim, and by what the target is known.
+    /// Is the target known by its derivative?
     fn by_derivative(claim: &ClaimRecord) -> bool {
         claim.known_by == KnownBy::Derivative
     }

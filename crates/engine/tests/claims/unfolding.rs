@@ -137,3 +137,23 @@ fn equal_definitions_share_a_node() {
     // q, q', q·q', the sum, t, and what the law and the derivation need; q^5 comes on top.
     assert!(two.program.len() <= one.program.len() + 3);
 }
+
+#[test]
+fn an_element_is_not_defined_twice_by_claims() {
+    let yields = r#"yields = { "w[0]" = ["q"] }"#;
+    let rest = claim("one", "target = \"q\"", r#""q""#, yields)
+        + &claim("two", "target = \"2*q\"", r#""q""#, yields);
+    assert_eq!(messages(&rest), ["`w[0]` is defined already"]);
+    let rest = family(r#""a[0] = q""#)
+        + &claim(
+            "c",
+            "target = \"q\"",
+            r#""q""#,
+            r#"yields = { "a[0]" = ["q"] }"#,
+        );
+    assert!(
+        messages(&rest)[0].contains("`a[0]`"),
+        "{:?}",
+        messages(&rest)
+    );
+}

@@ -259,3 +259,37 @@ fn a_primitive_that_does_not_exist_refutes_its_own_claim_and_unsettles_others() 
     };
     assert!(unsettled.reason.contains("`p[1]`"), "{}", unsettled.reason);
 }
+
+#[test]
+fn a_unique_rational_coefficient_is_shown_where_terms_depend_on_derivatives() {
+    // E′ = k E: the primitive of E is E/k, and no other.
+    let text = r#"
+[ring]
+variable = "t"
+constants = ["k"]
+generators = ["E"]
+[ring.derivative]
+"E" = "k*E"
+[[claim]]
+name = "c"
+derivative = "E"
+terms = ["E"]
+"#;
+    let model =
+        linform_spec::parse("spec.toml", text.to_owned(), &mut |_| Err(String::new())).unwrap();
+    let prepared =
+        linform_engine::prepare(model, None, linform_engine::PrepareLimits::default()).unwrap();
+    let record = linform_engine::solve(
+        &prepared,
+        &[true],
+        Options::default(),
+        &Unlimited,
+        &linform_engine::Silent,
+    );
+    let Finding::Refuted(Refutation::OtherCoefficients { form, .. }) = &only(&record).finding
+    else {
+        panic!("{:?}", only(&record).finding);
+    };
+    assert_eq!(text_of_form(form), "(1/k)*E");
+    assert!(verify(&record, &Unlimited).unwrap().is_confirmed());
+}
