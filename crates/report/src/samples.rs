@@ -21,11 +21,16 @@ pub(crate) fn quotient(
         }
         sum
     };
-    Coefficient {
+    canonical(Coefficient {
         names: Arc::from(["t".to_owned()]),
         numerator: side(numerator),
         denominator: side(denominator),
-    }
+    })
+}
+
+/// The coefficient as it is read from its text.
+pub(crate) fn canonical(coefficient: Coefficient) -> Coefficient {
+    Coefficient::parse(&coefficient.to_string(), &coefficient.names).unwrap()
 }
 
 pub(crate) fn polynomial(terms: &[(i64, i64, u32)]) -> Coefficient {

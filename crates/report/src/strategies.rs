@@ -1,5 +1,6 @@
 //! Random records for tests.
 
+use crate::samples::canonical;
 use indexmap::IndexMap;
 use linform_engine::published::{Coefficient, PublishedPolynomial};
 use linform_engine::record::*;
@@ -30,10 +31,12 @@ fn coefficients() -> impl Strategy<Value = Coefficient> {
             p
         })
     ];
-    (polynomials(), denominators).prop_map(|(numerator, denominator)| Coefficient {
-        names: Arc::from(["t".to_owned()]),
-        numerator,
-        denominator,
+    (polynomials(), denominators).prop_map(|(numerator, denominator)| {
+        canonical(Coefficient {
+            names: Arc::from(["t".to_owned()]),
+            numerator,
+            denominator,
+        })
     })
 }
 

@@ -260,7 +260,7 @@ fn contradiction(
                     (_, true) => format!(" {} ", style.minus()),
                 });
                 if let Some(factor) = factor {
-                    sum.push_str(&format!("{factor}{}", style.pick("*", "·", "\\,")));
+                    sum.push_str(&format!("{factor}{}", style.dot()));
                 }
                 sum.push_str(&format!("[{}]", monomial(row)));
             }

@@ -4,8 +4,9 @@ use super::Style;
 use super::expression::{Level, Written};
 use super::name::{name, power, power_may_follow, primes};
 use linform_engine::published::{Coefficient, PublishedPolynomial};
-use linform_scalar::published::{BigRational, One, Signed as _};
+use linform_scalar::published::{BigInt, BigRational, One, Signed as _, Zero, gcd, lcm};
 use linform_spec::split_primes;
+use std::borrow::Cow;
 
 /// A formula without its sign.
 #[derive(Clone, Debug)]
@@ -26,9 +27,10 @@ impl Signed {
 
 /// A coefficient with the sign of its first term taken out.
 pub(crate) fn signed(style: Style, coefficient: &Coefficient) -> Signed {
+    let (numerator, denominator) = sides(coefficient);
     let mut negative = false;
     let mut summands = Vec::new();
-    for (position, (exponents, value)) in coefficient.numerator.terms().enumerate() {
+    for (position, (exponents, value)) in numerator.terms().enumerate() {
         if position == 0 {
             negative = value.is_negative();
         }
@@ -42,18 +44,53 @@ pub(crate) fn signed(style: Style, coefficient: &Coefficient) -> Signed {
         negative,
         summands,
         denominator: (!coefficient.is_polynomial())
-            .then(|| polynomial(style, &coefficient.denominator, &coefficient.names)),
+            .then(|| polynomial(style, &denominator, &coefficient.names)),
     }
 }
 
-/// A coefficient in one piece: `−3/10 t² + 1/5`.
+/// A coefficient in one piece: `−3/10·t² + 1/5`.
 pub(crate) fn coefficient(style: Style, coefficient: &Coefficient) -> Written {
-    let numerator = polynomial(style, &coefficient.numerator, &coefficient.names);
+    let (above, below) = sides(coefficient);
+    let numerator = polynomial(style, &above, &coefficient.names);
     if coefficient.is_polynomial() {
         return numerator;
     }
-    let denominator = polynomial(style, &coefficient.denominator, &coefficient.names);
+    let denominator = polynomial(style, &below, &coefficient.names);
     quotient(style, &numerator, &denominator)
+}
+
+/// Numerator and denominator; those of a quotient with integral coefficients, without a common integral factor, and with
+/// a positive leading coefficient of the denominator: `(t² + 1)/(2·t)`.
+fn sides(
+    coefficient: &Coefficient,
+) -> (Cow<'_, PublishedPolynomial>, Cow<'_, PublishedPolynomial>) {
+    let (above, below) = (&coefficient.numerator, &coefficient.denominator);
+    if coefficient.is_polynomial() {
+        return (Cow::Borrowed(above), Cow::Borrowed(below));
+    }
+    let values = || above.terms().chain(below.terms()).map(|(_, value)| value);
+    let common = values().fold(BigInt::one(), |common, value| {
+        lcm(common, value.denom().clone())
+    });
+    let content = values().fold(BigInt::zero(), |content, value| {
+        gcd(content, value.numer() * (&common / value.denom()))
+    });
+    let negative = below
+        .terms()
+        .next()
+        .is_some_and(|(_, value)| value.is_negative());
+    if content.is_zero() {
+        return (Cow::Borrowed(above), Cow::Borrowed(below));
+    }
+    let factor = BigRational::new(if negative { -common } else { common }, content);
+    let scaled = |side: &PublishedPolynomial| {
+        let mut result = PublishedPolynomial::default();
+        for (exponents, value) in side.terms() {
+            result.add_term(exponents.to_vec(), value * &factor);
+        }
+        Cow::Owned(result)
+    };
+    (scaled(above), scaled(below))
 }
 
 pub(crate) fn quotient(style: Style, numerator: &Written, denominator: &Written) -> Written {
@@ -101,24 +138,18 @@ fn polynomial(style: Style, polynomial: &PublishedPolynomial, names: &[String]) 
     Written { text, level }
 }
 
-/// A positive number times a monomial: `1/3 t²`, `3t`, `t`, `7/12`.
+/// A positive number times a monomial: `1/3·t²`, `3·t`, `t`, `7/12`.
 fn value_and_monomial(
     style: Style,
     value: &BigRational,
     exponents: &[u32],
     names: &[String],
 ) -> String {
-    let (monomial, letters) = monomial(style, exponents, names);
+    let monomial = monomial(style, exponents, names);
     match (value.is_one(), monomial.is_empty()) {
         (true, false) => monomial,
         (_, true) => number(style, value),
-        (false, false) => match style {
-            Style::Ascii => format!("{value}*{monomial}"),
-            Style::Unicode if !letters => format!("{value}·{monomial}"),
-            Style::Unicode if value.is_integer() => format!("{value}{monomial}"),
-            Style::Unicode => format!("{value} {monomial}"),
-            Style::Latex => format!("{}\\,{monomial}", number(style, value)),
-        },
+        (false, false) => format!("{}{}{monomial}", number(style, value), style.dot()),
     }
 }
 
@@ -135,9 +166,7 @@ fn number(style: Style, value: &BigRational) -> String {
     }
 }
 
-/// The monomial, and whether all names in it are single letters, which can stand side by side.
-fn monomial(style: Style, exponents: &[u32], names: &[String]) -> (String, bool) {
-    let mut letters = true;
+fn monomial(style: Style, exponents: &[u32], names: &[String]) -> String {
     let mut factors = Vec::new();
     for (exponent, symbol) in exponents
         .iter()
@@ -145,7 +174,6 @@ fn monomial(style: Style, exponents: &[u32], names: &[String]) -> (String, bool)
         .filter(|(exponent, _)| **exponent > 0)
     {
         let (base, order) = split_primes(symbol);
-        letters &= base.chars().nth(1).is_none();
         let symbol = format!("{}{}", name(style, base), primes(style, order));
         factors.push(match *exponent {
             1 => symbol,
@@ -155,6 +183,5 @@ fn monomial(style: Style, exponents: &[u32], names: &[String]) -> (String, bool)
             _ => format!("({symbol}){}", power(style, &exponent.to_string())),
         });
     }
-    let product = factors.join(style.pick("*", if letters { "" } else { "·" }, "\\,"));
-    (product, letters)
+    factors.join(style.dot())
 }

@@ -135,10 +135,7 @@ pub(super) fn write(style: Style, expr: &Expr) -> Written {
             match (left.as_str(), right.as_str()) {
                 ("1", _) => write(style, b),
                 (_, "1") => write(style, a),
-                _ => Written::new(
-                    format!("{left}{}{right}", times(style, a, b)),
-                    Level::Product,
-                ),
+                _ => Written::new(format!("{left}{}{right}", times(style, b)), Level::Product),
             }
         }
         ExprKind::Div(a, b) => match style {
@@ -287,17 +284,11 @@ pub(super) fn bounds(style: Style, expr: &Expr) -> (String, String) {
 }
 
 /// What stands between two factors.
-fn times(style: Style, left: &Expr, right: &Expr) -> &'static str {
-    let number = matches!(left.kind, ExprKind::Number(_)) && is_letter_power(right);
-    let fraction = matches!(&left.kind, ExprKind::Div(above, below)
-        if matches!((&above.kind, &below.kind), (ExprKind::Number(_), ExprKind::Number(_))));
+fn times(style: Style, right: &Expr) -> &'static str {
     match style {
-        Style::Ascii => "*",
-        Style::Unicode if fraction && is_letter_power(right) => " ",
-        Style::Unicode if number || is_letter_power(left) && is_letter_power(right) => "",
-        Style::Unicode => "·",
-        Style::Latex if starts_with_letter(right) => "\\,",
+        Style::Latex if starts_with_letter(right) => style.dot(),
         Style::Latex => " \\cdot ",
+        _ => style.dot(),
     }
 }
 
@@ -325,19 +316,6 @@ fn starts_with_letter(expr: &Expr) -> bool {
     }
 }
 
-/// Is this a product of powers of one-letter names, which can stand side by side?
-fn is_letter_power(expr: &Expr) -> bool {
-    match &expr.kind {
-        ExprKind::Name { base, .. } => base.chars().nth(1).is_none(),
-        ExprKind::Pow(base, _) => is_letter_power(base),
-        ExprKind::Mul(left, right) => {
-            is_letter_power(right)
-                && (is_letter_power(left) || matches!(left.kind, ExprKind::Number(_)))
-        }
-        _ => false,
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -360,7 +338,7 @@ mod tests {
                 "u[0,0]·u[1,1]",
                 "u_{0,0}\\,u_{1,1}",
             ),
-            ("q^2*q'^4", "q^2*q'^4", "q²q′⁴", "q^{2}\\,q'^{4}"),
+            ("q^2*q'^4", "q^2*q'^4", "q²·q′⁴", "q^{2}\\,q'^{4}"),
             ("D(A^2)", "D(A^2)", "(A²)′", "\\bigl(A^{2}\\bigr)'"),
             (
                 "minor(u,[0,1],[0,2])",
@@ -371,7 +349,7 @@ mod tests {
             (
                 "3*t*(q + 1)",
                 "3*t*(q + 1)",
-                "3t·(q + 1)",
+                "3·t·(q + 1)",
                 "3\\,t\\,\\bigl(q + 1\\bigr)",
             ),
             (
@@ -380,7 +358,7 @@ mod tests {
                 "a − (b − c)",
                 "a - \\bigl(b - c\\bigr)",
             ),
-            ("a/(b*c)", "a/(b*c)", "a/(bc)", "\\frac{a}{b\\,c}"),
+            ("a/(b*c)", "a/(b*c)", "a/(b·c)", "\\frac{a}{b\\,c}"),
             ("-g2^3", "-g2^3", "−g2³", "-g_{2}^{3}"),
             ("℘'^2", "℘'^2", "℘′²", "\\wp'^{2}"),
             (
@@ -393,7 +371,7 @@ mod tests {
             (
                 "3/5*t*ratio(F,1)*ratio(G,2)",
                 "3/5*t*F'/F*(G''/G)",
-                "3/5 t·F′/F·(G″/G)",
+                "3/5·t·F′/F·(G″/G)",
                 "\\frac{3}{5}\\,t\\,\\frac{F'}{F}\\,\\frac{G''}{G}",
             ),
             (
@@ -402,7 +380,7 @@ mod tests {
                 "8·F′/F",
                 "8\\,\\frac{F'}{F}",
             ),
-            ("D(D(A*B))", "D(D(A*B))", "(AB)″", "\\bigl(A\\,B\\bigr)''"),
+            ("D(D(A*B))", "D(D(A*B))", "(A·B)″", "\\bigl(A\\,B\\bigr)''"),
             ("D(D(P')')", "D(D(P')')", "P⁗", "P^{(4)}"),
             ("D(u[1,0])", "D(u[1,0])", "u[1,0]′", "u_{1,0}'"),
             (
@@ -414,7 +392,7 @@ mod tests {
             (
                 "primitive of x*A^2 + 1",
                 "primitive of (x*A^2 + 1)",
-                "primitive of (xA² + 1)",
+                "primitive of (x·A² + 1)",
                 "\\text{primitive of }\\bigl(x\\,A^{2} + 1\\bigr)",
             ),
         ] {

@@ -9,7 +9,7 @@ use linform_engine::record::FormTerm;
 /// is a sum: a line may be broken between them, but is better broken between products.
 pub(crate) type Product = Vec<String>;
 
-/// The products of a form: `1/24·F⁗/F`, `+ 1/3 t·F″/F`. A form without terms is `0`.
+/// The products of a form: `1/24·F⁗/F`, `+ 1/3·t·F″/F`. A form without terms is `0`.
 pub(crate) fn form(style: Style, form: &[FormTerm]) -> Vec<Product> {
     let mut products = Vec::new();
     for part in in_reading_order(form) {
@@ -50,11 +50,21 @@ pub(crate) fn combination(
     if !particular.is_empty() || kernel.is_empty() {
         products = form(style, particular);
     }
-    let dot = style.pick("*", "·", "\\,");
+    let dot = style.dot();
     for (letter, vector) in kernel {
         let mut inner = form(style, vector);
-        let (open, close) = parentheses(style, &line(&inner));
+        let whole = line(&inner);
+        // A single product needs no parentheses: a term that is 0 by itself gives `c₁·0`.
+        let bare = inner.len() == 1 && !whole.starts_with(style.minus());
+        let (open, close) = match bare {
+            true => ("", ""),
+            false => parentheses(style, &whole),
+        };
         let plus = if products.is_empty() { "" } else { "+ " };
+        if whole == "1" {
+            products.push(vec![format!("{plus}{letter}")]);
+            continue;
+        }
         if let Some(first) = inner.first_mut().and_then(|product| product.first_mut()) {
             first.insert_str(0, &format!("{plus}{letter}{dot}{open}"));
         }
@@ -111,7 +121,7 @@ fn product(style: Style, first: bool, coefficient: &Signed, part: &FormTerm) -> 
     let term = expression(style, &part.term);
     let trivial = term.text == "1";
     let several = coefficient.summands.len() > 1;
-    let dot = style.pick("*", "·", "\\,");
+    let dot = style.dot();
     let tail = match (coefficient.is_unit(), trivial) {
         (true, _) => return vec![format!("{sign}{}", term.at(style, level))],
         (false, true) => String::new(),
@@ -186,7 +196,7 @@ mod tests {
         ];
         assert_eq!(
             form_line(Style::Unicode, &parts),
-            "2t·F‴/F − (3/10 t² − 1/5)·F″/F − F′/F"
+            "2·t·F‴/F − (3/10·t² − 1/5)·F″/F − F′/F"
         );
         assert_eq!(
             form_line(Style::Ascii, &parts),
@@ -204,7 +214,7 @@ mod tests {
         ];
         assert_eq!(
             form_line(Style::Unicode, &parts),
-            "(t² + 1)/(2t)·q − 1/2/(t + 1)·(q + 1) + t³ − 1"
+            "(t² + 1)/(2·t)·q − 1/(2·t + 2)·(q + 1) + t³ − 1"
         );
         assert_eq!(form_line(Style::Unicode, &[]), "0");
     }
@@ -225,5 +235,20 @@ mod tests {
         };
         assert_eq!(family(&particular), "1/2·a + c₁·(a − t·b)");
         assert_eq!(family(&[]), "c₁·(a − t·b)");
+    }
+
+    #[test]
+    fn a_kernel_of_one_product_needs_no_parentheses() {
+        for (term, sign, written) in [
+            ("0", 1, "q + c₁·0"),
+            ("q - q", 1, "q + c₁·(q − q)"),
+            ("q - q", -1, "q + c₁·(−(q − q))"),
+            ("1", 1, "q + c₁"),
+        ] {
+            let kernel = [part(term, polynomial(&[(sign, 1, 0)]))];
+            let particular = [part("q", polynomial(&[(1, 1, 0)]))];
+            let products = combination(Style::Unicode, &particular, &[("c₁".to_owned(), &kernel)]);
+            assert_eq!(line(&products), written);
+        }
     }
 }

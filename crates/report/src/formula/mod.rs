@@ -34,6 +34,11 @@ impl Style {
         }
     }
 
+    /// What stands between two factors. Names have any number of letters, so that none stand side by side.
+    pub(crate) fn dot(self) -> &'static str {
+        self.pick("*", "·", "\\,")
+    }
+
     pub(crate) fn minus(self) -> &'static str {
         self.pick("-", "−", "-")
     }

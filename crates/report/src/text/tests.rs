@@ -22,22 +22,23 @@ found from their derivatives on the way: u[2,0] (1, largest system 19 × 6 by ma
   fraction-free)
 
 trace (2 instances: all hold)
-  u[2,0] = 1/6·F‴/F + 1/3 t·F′/F
+  u[2,0] = 1/6·F‴/F + 1/3·t·F′/F
     j = 2, k = 0 · holds · 33 × 8 by matching, fraction-free · proved: the derivatives agree;
       constant of integration 0
-  u[3,0] = 1/24·F⁗/F + 1/3 t·F″/F + 7/12·F′/F
+  u[3,0] = 1/24·F⁗/F + 1/3·t·F″/F + 7/12·F′/F
     j = 3, k = 0 · holds · 33 × 8 by matching, fraction-free · proved: the derivatives agree;
       constant of integration 0
 
 single product
   u[0,0]·u[1,1] is no linear form in F′/F, F″/F, F‴/F, F⁗/F, whatever the coefficients
     refuted · 28 × 4 by matching, fraction-free · proved: the equations contradict each other
-    comparing the coefficients of q′⁸ and q²q′⁴: 3t times the first minus the second leaves 0 = 2/3
+    comparing the coefficients of q′⁸ and q²·q′⁴: 3·t times the first minus the second leaves
+      0 = 2/3
 
 quotient
   q² is no linear form in F′/F, with polynomial coefficients
     but with rational coefficients, and only these:
-    q² = (t² + 1)/(2t)·F′/F
+    q² = (t² + 1)/(2·t)·F′/F
     refuted · 28 × 4 by matching, fraction-free · proved: there is one solution, and its
       coefficients are not admitted
 
@@ -101,7 +102,7 @@ fn lines_keep_the_width_and_the_width_may_be_unlimited() {
         let too_long = text.lines().find(|line| line.chars().count() > width);
         assert_eq!(too_long, None);
         assert!(
-            text.contains("\n             + (38/7 t² − 1/5)·F⁽³⁸⁾/F"),
+            text.contains("\n             + (38/7·t² − 1/5)·F⁽³⁸⁾/F"),
             "{text}"
         );
     }
@@ -128,7 +129,7 @@ fn long_certificates_are_folded() {
     assert!(
         text.contains(
             "comparing the coefficients of 12 monomials, with [m] for the equation of m: \
-             (2t + 1)·[q²] + (3t + 1)·[q³] + (4t + 1)·[q⁴] + … (9 more) leaves 0 = t\n"
+             (2·t + 1)·[q²] + (3·t + 1)·[q³] + (4·t + 1)·[q⁴] + … (9 more) leaves 0 = t\n"
         ),
         "{text}"
     );
