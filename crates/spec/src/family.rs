@@ -72,8 +72,9 @@ pub struct Resolved<'a> {
 impl Family {
     /// The rule for the element with these indices.
     ///
-    /// The first rule that matches wins. In a symmetric family the indices are tried in falling order, then in
-    /// rising order, then as given. A condition that cannot be evaluated (an overflow) does not match.
+    /// The first rule that matches wins. In a symmetric family each rule is tried with the indices in falling
+    /// order, then in rising order, then as given, before the next rule is looked at. A condition that cannot
+    /// be evaluated (an overflow) does not match.
     pub fn resolve(&self, indices: &[i64]) -> Option<Resolved<'_>> {
         let mut orders: Vec<Vec<i64>> = Vec::with_capacity(3);
         if self.symmetric {
@@ -83,9 +84,9 @@ impl Family {
             orders.push(sorted);
         }
         orders.push(indices.to_vec());
-        orders.into_iter().find_map(|indices| {
-            self.rules.iter().find_map(|rule| {
-                rule.matches(&indices).map(|environment| Resolved {
+        self.rules.iter().find_map(|rule| {
+            orders.iter().find_map(|indices| {
+                rule.matches(indices).map(|environment| Resolved {
                     rule,
                     environment,
                     indices: indices.clone(),

@@ -223,3 +223,23 @@ fn a_condition_that_cannot_be_evaluated_does_not_match() {
     let resolved = model.families["w"].resolve(&[i64::MAX]).unwrap();
     assert_eq!(text_of(&resolved.rule.body), "2");
 }
+
+#[test]
+fn the_first_rule_wins_in_a_symmetric_family_whatever_the_order_of_its_indices() {
+    let model = model(
+        "[family.n]\nsymmetric = true\nrules = [\"n[0,j] = q^j\", \"n[i,j] = t^(i+j)\", \"n[0,3] = t\"]\n[family.m]\nsymmetric = true\nrules = [\"m[i,j] = q for i <= j\"]\n",
+    );
+    let number = |family: &str, indices: &[i64]| {
+        let family = &model.families[family];
+        let resolved = family.resolve(indices).unwrap();
+        let rule = family.rules.iter().position(|rule| rule == resolved.rule);
+        (rule, resolved.indices)
+    };
+    for indices in [[0, 3], [3, 0]] {
+        assert_eq!(number("n", &indices), (Some(0), vec![0, 3]));
+    }
+    for indices in [[1, 2], [2, 1]] {
+        assert_eq!(number("n", &indices), (Some(1), vec![2, 1]));
+        assert_eq!(number("m", &indices), (Some(0), vec![1, 2]));
+    }
+}
