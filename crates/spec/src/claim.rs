@@ -144,7 +144,7 @@ impl Claim {
 
     /// All values of the indices, in lexicographic order; one empty environment for a claim without sweep.
     ///
-    /// `through` bounds the sum of the indices.
+    /// `through` bounds the sum of the indices of a claim with an open sweep, and no others.
     ///
     /// # Errors
     ///
@@ -162,6 +162,7 @@ impl Claim {
     ) -> Result<Vec<Environment>, Diagnostic> {
         // Counted first, so that a sweep that is too long takes no memory.
         let budget = limit.saturating_mul(4);
+        let through = through.filter(|_| self.is_open());
         let mut found = Vec::new();
         let mut count = Walk::new(self, through, limit, budget);
         count

@@ -62,10 +62,10 @@ fn a_triangular_sweep_has_its_instances_in_lexicographic_order() {
         let key = |e: &Environment| (e["j"], e["k"]);
         key(&p[0]) < key(&p[1])
     }));
-    let through = model.claims[0].instances(Some(1), 1_000_000).unwrap();
+    // A bound is for open sweeps alone.
     assert_eq!(
-        through,
-        [env(&[("j", 0), ("k", 0)]), env(&[("j", 1), ("k", 0)])]
+        model.claims[0].instances(Some(1), 1_000_000).unwrap(),
+        instances
     );
 }
 

@@ -170,6 +170,13 @@ fn an_open_sweep_ends_where_the_sum_of_its_indices_does() {
 }
 
 #[test]
+fn a_closed_sweep_is_not_bounded() {
+    let claim = claim("for = \"n = 3..5\"\nterms = \"q\"");
+    let instances = claim.instances(Some(4), 100).unwrap();
+    assert_eq!(instances, [3, 4, 5].map(|n| env(&[("n", n)])));
+}
+
+#[test]
 fn a_claim_without_sweep_has_one_instance() {
     let claim = claim("terms = \"q\"");
     assert_eq!(claim.instances(None, 1).unwrap(), [env(&[])]);
