@@ -95,7 +95,11 @@ pub(crate) fn evidence(style: Style, claim: &ClaimRecord) -> String {
             "proved: the derivatives agree, and the terms leave the constant of integration open"
                 .to_owned()
         }
-        Finding::Undetermined { .. } => "proved: the terms are linearly dependent".to_owned(),
+        Finding::Undetermined { .. } => match claim.known_by {
+            KnownBy::Value => "proved: the terms are linearly dependent".to_owned(),
+            // The terms themselves may be independent, where their derivatives are not.
+            KnownBy::Derivative => "proved: the derivatives agree for every choice".to_owned(),
+        },
         Finding::Unsettled(unsettled) => {
             let limit = format!("limit: {}", unsettled.stop.word());
             match plain(style, &unsettled.reason) {
@@ -119,7 +123,7 @@ pub(crate) fn admitted(kind: CoefficientKind) -> &'static str {
 pub(crate) fn refused(style: Style, claim: &ClaimRecord, refutation: &Refutation) -> String {
     let with = match (refutation, claim.coefficients) {
         (
-            Refutation::Contradiction { .. },
+            Refutation::Contradiction { .. } | Refutation::NotAPrimitive { .. },
             CoefficientKind::Polynomial | CoefficientKind::Rational,
         ) => "whatever the coefficients".to_owned(),
         (_, kind) => format!("with {}", admitted(kind)),
@@ -128,11 +132,15 @@ pub(crate) fn refused(style: Style, claim: &ClaimRecord, refutation: &Refutation
 }
 
 /// What introduces the only solution, whose coefficients are not those that the claim admits.
-pub(crate) fn instead(only: &[FormTerm]) -> &'static str {
-    if only.iter().all(|part| part.coefficient.is_polynomial()) {
-        "but with polynomial coefficients, and only these:"
-    } else {
-        "but with rational coefficients, and only these:"
+pub(crate) fn instead(claim: &ClaimRecord) -> &'static str {
+    match claim.coefficients {
+        // Coefficients that contain the variable were not looked for.
+        CoefficientKind::Constant => {
+            "but with rational functions of the constants, and among those only these:"
+        }
+        CoefficientKind::Polynomial | CoefficientKind::Rational => {
+            "but with rational coefficients, and only these:"
+        }
     }
 }
 
@@ -330,9 +338,23 @@ pub(crate) fn free_choice(style: Style, claim: &ClaimRecord, letters: &[String])
         Finding::Undetermined { kernel, .. } => kernel.len().min(letters.len()),
         _ => letters.len(),
     };
-    let kind = match claim.coefficients {
-        CoefficientKind::Polynomial | CoefficientKind::Rational => "rational function",
-        CoefficientKind::Constant => "constant",
+    let base = match &claim.finding {
+        Finding::Undetermined { kernel, .. } => kernel
+            .iter()
+            .flatten()
+            .next()
+            .map_or(&[][..], |part| &part.coefficient.names),
+        _ => &[],
+    };
+    let constant = claim.coefficients == CoefficientKind::Constant || base.is_empty();
+    let (kind, of) = if constant {
+        ("constant", String::new())
+    } else {
+        let base = base
+            .iter()
+            .map(|name| inline(style, &expression(style, name).text));
+        let base = base.collect::<Vec<_>>().join(", ");
+        ("rational function", format!(" of {base}"))
     };
     let several = |kind: &str, letters: &[String]| {
         let plural = if letters.len() == 1 { "" } else { "s" };
@@ -342,12 +364,12 @@ pub(crate) fn free_choice(style: Style, claim: &ClaimRecord, letters: &[String])
     let (free, shifts) = letters.split_at(functions);
     match (free.is_empty(), shifts.is_empty()) {
         (false, false) => format!(
-            "for any {} and any {}",
+            "for any {}{of} and any {}",
             several(kind, free),
             several("constant", shifts)
         ),
         (true, _) => format!("for any {}", several("constant", shifts)),
-        (_, true) => format!("for any {}", several(kind, free)),
+        (_, true) => format!("for any {}{of}", several(kind, free)),
     }
 }
 

@@ -57,6 +57,7 @@ pub fn latex(record: &ResultRecord) -> String {
     }
     let unexpected = words::unexpected(record);
     let agreement = match unexpected.len() {
+        0 if record.claims.len() == 1 => "as expected.".to_owned(),
         0 => "all as expected.".to_owned(),
         _ => {
             let labels: Vec<String> = unexpected
@@ -109,7 +110,7 @@ fn write_claim(out: &mut String, claim: &ClaimRecord) {
             out.push_str(&format!("\n{} {refused}", words::inline(STYLE, &target)));
             match refutation {
                 Refutation::OtherCoefficients { form: only, .. } => {
-                    out.push_str(&format!("; {}\n", words::instead(only)));
+                    out.push_str(&format!("; {}\n", words::instead(claim)));
                     out.push_str(&equation(&parts, &form(STYLE, only)));
                 }
                 _ => out.push_str(".\n\n"),

@@ -50,7 +50,7 @@ pub(super) fn write(out: &mut String, options: &TextOptions, claim: &ClaimRecord
             );
             sentence(out, "  ", &text, 4, options.width);
             if let Refutation::OtherCoefficients { form: only, .. } = refutation {
-                sentence(out, "    ", words::instead(only), 4, options.width);
+                sentence(out, "    ", words::instead(claim), 4, options.width);
                 equation(out, options, &format!("  {target}"), 0, &form(style, only));
             }
         }

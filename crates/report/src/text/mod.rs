@@ -129,6 +129,7 @@ fn tail(out: &mut String, record: &ResultRecord, options: &TextOptions) {
     };
     let counts = words::counts(&record.claims);
     let agreement = match unexpected.len() {
+        0 if record.claims.len() == 1 => "as expected".to_owned(),
         0 => "all as expected".to_owned(),
         count => paint.alarm(&format!("{count} not as expected:")),
     };

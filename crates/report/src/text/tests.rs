@@ -1,6 +1,8 @@
 use super::*;
 use crate::samples;
-use linform_engine::record::{CertificateRow, Finding, Refutation};
+use linform_engine::record::{
+    CertificateRow, ClaimRecord, CoefficientKind, Finding, KnownBy, Refutation,
+};
 
 const PLAIN: TextOptions = TextOptions {
     colour: false,
@@ -43,14 +45,14 @@ quotient
       coefficients are not admitted
 
 primitive
-  u[1,0] is no linear form in F′/F, with polynomial coefficients
+  u[1,0] is no linear form in F′/F, whatever the coefficients
     refuted (expected: holds) · 28 × 4 by matching, fraction-free · proved: the derivative alone has
       a solution, and it is not the derivative of a form
     over the terms b, the derivative Σ r·b + Σ p·b′ has one solution, Σ p·b = t·F′/F and
       Σ r·b = 2·F′/F, where r is not p′
 
 family
-  F″/F/2 = 1/2·F″/F + c₁·(−(t − 1/5)·F″/F + F′/F), for any rational function c₁
+  F″/F/2 = 1/2·F″/F + c₁·(−(t − 1/5)·F″/F + F′/F), for any rational function c₁ of t
     undetermined · 28 × 4 by matching, fraction-free · proved: the terms are linearly dependent
 
 large
@@ -132,6 +134,55 @@ fn long_certificates_are_folded() {
              (2·t + 1)·[q²] + (3·t + 1)·[q³] + (4·t + 1)·[q⁴] + … (9 more) leaves 0 = t\n"
         ),
         "{text}"
+    );
+}
+
+#[test]
+fn words_say_what_was_checked_and_no_more() {
+    let said = |claim: ClaimRecord| {
+        let mut record = samples::record();
+        record.claims = vec![claim];
+        text(&record, &TextOptions { width: 0, ..PLAIN })
+    };
+    let claim = |finding| samples::claim("a", "q", 2, finding);
+
+    let constant = said(ClaimRecord {
+        coefficients: CoefficientKind::Constant,
+        ..claim(samples::rational_only())
+    });
+    assert!(
+        constant.contains("in F′/F, F″/F, with constant coefficients\n    but with rational functions of the constants, and among those only these:\n"),
+        "{constant}"
+    );
+    assert!(
+        constant.ends_with("\n1 claim: 1 refuted; as expected\n"),
+        "{constant}"
+    );
+
+    let family = said(ClaimRecord {
+        known_by: KnownBy::Derivative,
+        coefficients: CoefficientKind::Constant,
+        ..claim(samples::family())
+    });
+    assert!(family.contains(", for any constant c₁\n"), "{family}");
+    assert!(
+        family.contains("proved: the derivatives agree for every choice\n"),
+        "{family}"
+    );
+
+    let zero = samples::part("0", samples::polynomial(&[(1, 1, 0)]));
+    let nothing = said(ClaimRecord {
+        target: "0".to_owned(),
+        terms: vec!["0".to_owned()],
+        ..claim(Finding::Undetermined {
+            particular: Vec::new(),
+            kernel: vec![vec![zero]],
+            shift: None,
+        })
+    });
+    assert!(
+        nothing.contains("  0 = c₁·0, for any rational function c₁ of t\n"),
+        "{nothing}"
     );
 }
 
