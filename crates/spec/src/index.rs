@@ -4,6 +4,7 @@ use crate::expression::{Condition, Expr, ExprKind, Function, Relation, Sweep};
 use crate::source::{Diagnostic, Span};
 use crate::text::text_of;
 use indexmap::IndexMap;
+use std::fmt;
 
 /// The values of index variables, in the order in which they were bound.
 pub type Environment = IndexMap<String, i64>;
@@ -23,8 +24,31 @@ pub const MAX_EXPONENT: i64 = 10_000;
 /// If a name has no value in `env`, if something else occurs, if a division leaves a remainder, or if a value
 /// leaves the range of an `i64`.
 pub fn index_value(expr: &Expr, env: &Environment) -> Result<i64, Diagnostic> {
+    integer(expr, env, Integral::Index)
+}
+
+/// What an integer in an expression is, for messages.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Integral {
+    /// An index, a bound of a range, or an order.
+    Index,
+    /// An exponent.
+    Exponent,
+}
+
+impl fmt::Display for Integral {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(match self {
+            Integral::Index => "index",
+            Integral::Exponent => "exponent",
+        })
+    }
+}
+
+/// As [`index_value`], for exponents too.
+pub(crate) fn integer(expr: &Expr, env: &Environment, what: Integral) -> Result<i64, Diagnostic> {
     let both =
-        |a: &Expr, b: &Expr| Ok::<_, Diagnostic>((index_value(a, env)?, index_value(b, env)?));
+        |a: &Expr, b: &Expr| Ok::<_, Diagnostic>((integer(a, env, what)?, integer(b, env, what)?));
     let value = match &expr.kind {
         ExprKind::Number(n) => n.to_i64(),
         ExprKind::Name { base, primes: 0 } => match env.get(base) {
@@ -36,8 +60,8 @@ pub fn index_value(expr: &Expr, env: &Environment) -> Result<i64, Diagnostic> {
                 ));
             }
         },
-        ExprKind::Group(a) => Some(index_value(a, env)?),
-        ExprKind::Neg(a) => index_value(a, env)?.checked_neg(),
+        ExprKind::Group(a) => Some(integer(a, env, what)?),
+        ExprKind::Neg(a) => integer(a, env, what)?.checked_neg(),
         ExprKind::Add(a, b) => {
             let (a, b) = both(a, b)?;
             a.checked_add(b)
@@ -56,10 +80,12 @@ pub fn index_value(expr: &Expr, env: &Environment) -> Result<i64, Diagnostic> {
                 Some(0) => a.checked_div(b),
                 _ => {
                     return Err(Diagnostic::new(
-                        format!("the index {a}/{b} is not an integer"),
+                        format!("the {what} {a}/{b} is not an integer"),
                         expr.span,
                     )
-                    .help("an index is an integer: a division in it must leave no remainder"));
+                    .help(format!(
+                        "an {what} is an integer: a division in it must leave no remainder"
+                    )));
                 }
             }
         }
@@ -68,14 +94,26 @@ pub fn index_value(expr: &Expr, env: &Environment) -> Result<i64, Diagnostic> {
             u32::try_from(b).ok().and_then(|b| a.checked_pow(b))
         }
         _ => {
-            return Err(Diagnostic::new("this is not an index", expr.span)
-                .help("an index is made of integers, index variables and `+ - * ^`"));
+            return Err(not_integral(what, expr.span));
         }
     };
     value.ok_or_else(|| {
-        Diagnostic::new("this index is out of range", expr.span)
-            .help("indices lie between -2^63 and 2^63 - 1, and exponents in them are not negative")
+        let help = match what {
+            Integral::Index => {
+                "indices lie between -2^63 and 2^63 - 1, and exponents in them are not negative"
+                    .to_owned()
+            }
+            Integral::Exponent => format!("exponents lie between 0 and {MAX_EXPONENT}"),
+        };
+        Diagnostic::new(format!("this {what} is out of range"), expr.span).help(help)
     })
+}
+
+/// The error for what is no arithmetic of integers.
+pub(crate) fn not_integral(what: Integral, span: Span) -> Diagnostic {
+    Diagnostic::new(format!("this is not an {what}"), span).help(format!(
+        "an {what} is made of integers, index variables and `+ - * ^`"
+    ))
 }
 
 /// Do all comparisons of the chain hold?
@@ -319,7 +357,7 @@ impl Substitution<'_> {
         if let Arithmetic::Other = self.arithmetic(expr, Quotients::Exact) {
             return self.value(expr);
         }
-        let value = index_value(expr, self.env)?;
+        let value = integer(expr, self.env, Integral::Exponent)?;
         if !(0..=MAX_EXPONENT).contains(&value) {
             return Err(Diagnostic::new(
                 format!("the exponent {} is {value}", text_of(expr)),

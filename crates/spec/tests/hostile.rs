@@ -154,7 +154,10 @@ fn clauses_and_rules_are_bounded() {
 #[test]
 fn a_large_file_is_refused() {
     let message = read("#".repeat(17 << 20)).unwrap_err();
-    assert!(message.contains("at most 2097152 bytes"), "{message}");
+    assert!(
+        message.contains("at most 2 MB, which is 2097152 bytes"),
+        "{message}"
+    );
 }
 
 #[test]

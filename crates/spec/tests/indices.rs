@@ -78,6 +78,10 @@ fn errors_name_what_the_indices_make_wrong() {
         "the divisor (j - 3) is 0 for these indices"
     );
     assert_eq!(
+        put("q^(j/2)", &[("j", 3)]),
+        "the exponent 3/2 is not an integer"
+    );
+    assert_eq!(
         put("a[j/2]", &[("j", 3)]),
         "the index 3/2 is not an integer"
     );

@@ -3,7 +3,7 @@
 use super::scope::{Scope, Where};
 use crate::collect::Collector;
 use crate::expression::{Condition, Expr, ExprKind};
-use crate::index::{Environment, MAX_EXPONENT, index_value};
+use crate::index::{Environment, Integral, MAX_EXPONENT, integer, not_integral};
 use crate::read::shorten;
 use crate::source::Diagnostic;
 
@@ -21,58 +21,75 @@ pub(crate) enum Index {
 impl Scope<'_> {
     /// Checks an expression that stands for an integer.
     pub(crate) fn index(&self, expr: &Expr, errors: &mut Collector) -> Index {
-        match self.index_names(expr, errors) {
+        self.integral(expr, Integral::Index, errors)
+    }
+
+    fn integral(&self, expr: &Expr, what: Integral, errors: &mut Collector) -> Index {
+        match self.index_names(expr, what, errors) {
             // Without variables its value is known, or it has none.
             Index::Fixed(_) => errors
-                .take(index_value(expr, &Environment::new()))
+                .take(integer(expr, &Environment::new(), what))
                 .map_or(Index::Wrong, Index::Fixed),
             other => other,
         }
     }
 
     /// Checks the names; `Fixed` means that there are none.
-    fn index_names(&self, expr: &Expr, errors: &mut Collector) -> Index {
+    fn index_names(&self, expr: &Expr, what: Integral, errors: &mut Collector) -> Index {
         match &expr.kind {
             ExprKind::Number(n) if n.to_i64().is_none() => {
                 errors.push(
-                    Diagnostic::new("this index is out of range", expr.span)
-                        .help("indices lie between -2^63 and 2^63 - 1"),
+                    Diagnostic::new(format!("this {what} is out of range"), expr.span).help(
+                        match what {
+                            Integral::Index => "indices lie between -2^63 and 2^63 - 1".to_owned(),
+                            Integral::Exponent => {
+                                format!("exponents lie between 0 and {MAX_EXPONENT}")
+                            }
+                        },
+                    ),
                 );
                 Index::Wrong
             }
             ExprKind::Number(_) => Index::Fixed(0),
             ExprKind::Name { base, primes: 0 } if self.binds(base) => Index::Variable,
             ExprKind::Name { base, primes } => {
-                self.not_an_index(expr, base, *primes, errors);
+                self.not_an_index(expr, base, *primes, what, errors);
                 Index::Wrong
             }
-            ExprKind::Neg(a) | ExprKind::Group(a) => self.index_names(a, errors),
+            ExprKind::Neg(a) | ExprKind::Group(a) => self.index_names(a, what, errors),
             ExprKind::Add(a, b)
             | ExprKind::Sub(a, b)
             | ExprKind::Mul(a, b)
             | ExprKind::Div(a, b)
             | ExprKind::Pow(a, b) => {
-                match (self.index_names(a, errors), self.index_names(b, errors)) {
+                match (
+                    self.index_names(a, what, errors),
+                    self.index_names(b, what, errors),
+                ) {
                     (Index::Wrong, _) | (_, Index::Wrong) => Index::Wrong,
                     (Index::Variable, _) | (_, Index::Variable) => Index::Variable,
                     (Index::Fixed(_), Index::Fixed(_)) => Index::Fixed(0),
                 }
             }
             _ => {
-                errors.push(
-                    Diagnostic::new("this is not an index", expr.span)
-                        .help("an index is made of integers, index variables and `+ - * ^`"),
-                );
+                errors.push(not_integral(what, expr.span));
                 Index::Wrong
             }
         }
     }
 
-    fn not_an_index(&self, expr: &Expr, base: &str, primes: u32, errors: &mut Collector) {
+    fn not_an_index(
+        &self,
+        expr: &Expr,
+        base: &str,
+        primes: u32,
+        what: Integral,
+        errors: &mut Collector,
+    ) {
         if self.names.is_element(base, primes) {
             let name = shorten(base);
             errors.push(
-                Diagnostic::new(format!("the symbol `{name}` is not an index"), expr.span)
+                Diagnostic::new(format!("the symbol `{name}` is not an {what}"), expr.span)
                     .help("indices and exponents are integers, or index variables bound by `for` or by the left side of a rule"),
             );
             return;
@@ -93,7 +110,7 @@ impl Scope<'_> {
 
     /// Checks an exponent.
     pub(crate) fn exponent(&self, expr: &Expr, errors: &mut Collector) -> Index {
-        let index = self.index(expr, errors);
+        let index = self.integral(expr, Integral::Exponent, errors);
         if let Index::Fixed(value) = index {
             // In a model, negative powers are those of power series that are units.
             let units = matches!(self.place, Where::Equation(_) | Where::Kernel(_));

@@ -131,16 +131,22 @@ impl Scope<'_> {
             Where::Ring | Where::Data if self.names.is_element(base, primes) => {}
             Where::Decay if self.names.is_base(base, primes) => {}
             Where::Decay if self.names.is_element(base, primes) => errors.push(
-                Diagnostic::new(format!("`{}` cannot stand here", written(base, primes)), span)
-                    .help(self.what_may_stand_here()),
+                Diagnostic::new(
+                    format!("`{}` cannot stand here", written(base, primes)),
+                    span,
+                )
+                .help(self.what_may_stand_here()),
             ),
             Where::Derivation if self.names.is_symbol(base, primes) => {}
             Where::Derivation if self.names.is_element(base, primes) => errors.push(
                 Diagnostic::new(
-                    format!("`{}` is a derivative that is no generator", written(base, primes)),
+                    format!(
+                        "`{}` is a derivative that is no generator",
+                        written(base, primes)
+                    ),
                     span,
                 )
-                .help("the derivation gives the derivatives of generators by the generators themselves"),
+                .help(self.what_may_stand_here()),
             ),
             _ => self.unknown_name(span, base, primes, errors),
         }
@@ -226,7 +232,10 @@ impl Scope<'_> {
     pub(crate) fn what_may_stand_here(&self) -> &'static str {
         match self.place {
             Where::Ring | Where::Data => "an element of the ring stands here",
-            Where::Derivation => "the derivative of a generator is a polynomial in the symbols",
+            Where::Derivation => {
+                "derivatives of generators are written in the symbols themselves: a polynomial in the \
+                 generators, the variable and the constants, without `D` and further primes"
+            }
             Where::Equation(_) | Where::Kernel(_) => {
                 "a model is written with its parameter, its variables, its function, and constants"
             }

@@ -81,7 +81,10 @@ impl Reader<'_> {
             };
             self.errors.push(
                 Diagnostic::new(format!("this file has {} bytes", text.len()), start).help(
-                    format!("a spec has at most {MAX_FILE} bytes; numbers belong into a data file"),
+                    format!(
+                        "a spec has at most {} MB, which is {MAX_FILE} bytes; numbers belong into a data file",
+                        MAX_FILE >> 20
+                    ),
                 ),
             );
             self.draft.incomplete = true;
