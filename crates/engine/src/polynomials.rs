@@ -207,22 +207,23 @@ pub(crate) fn ring_of(prepared: &Prepared, control: &dyn Control) -> Result<Ring
             ring.constants.clone(),
         )
     };
-    // The derivations themselves are evaluated where nothing is derived yet: a derivation rule may name a higher derivative
-    // only if that was reduced by rules before it, so the rules are evaluated one by one.
-    let mut derivatives = vec![Polynomial::zero(); ring.generators.len()];
-    for (generator, node) in prepared.derivatives.iter().enumerate() {
-        let partial = Ring::new(symbols(), derivatives.clone()).map_err(|_| Stop::SizeLimit)?;
-        let mut arithmetic = RingArithmetic {
-            ring: &partial,
-            solver: Solver::Auto,
-            control,
-            forms: &Forms::default(),
-        };
-        let mut values = vec![None; prepared.program.len()];
-        prepared
-            .program
-            .evaluate(&mut arithmetic, &[*node], &mut values)?;
-        derivatives[generator] = values[node.position()].take().unwrap_or_default();
-    }
+    // The reader of specs admits no derivatives in the derivation rules, so they are the same in a ring of constants.
+    let constants = vec![Polynomial::zero(); ring.generators.len()];
+    let constants = Ring::new(symbols(), constants).map_err(|_| Stop::SizeLimit)?;
+    let mut arithmetic = RingArithmetic {
+        ring: &constants,
+        solver: Solver::Auto,
+        control,
+        forms: &Forms::default(),
+    };
+    let mut values = vec![None; prepared.program.len()];
+    prepared
+        .program
+        .evaluate(&mut arithmetic, &prepared.derivatives, &mut values)?;
+    let derivatives = prepared
+        .derivatives
+        .iter()
+        .map(|node| values[node.position()].clone().unwrap_or_default())
+        .collect();
     Ok(Ring::new(symbols(), derivatives).map_err(|_| Stop::SizeLimit)?)
 }

@@ -121,7 +121,7 @@ impl Default for PrepareLimits {
             instances: 200_000,
             nodes: 3_000_000,
             depth: 10_000,
-            steps: 30_000_000,
+            steps: 10_000_000,
         }
     }
 }

@@ -3,31 +3,28 @@
 use super::arithmetic::CheckError;
 use super::expansion::Expansion;
 use super::{Check, CheckOutcome};
-use crate::prepare::{Instance, Prepared};
+use crate::prepare::Instance;
 use crate::program::{NodeId, Operation};
 use crate::published::{Coefficient, PublishedPolynomial, monomial_text};
 use crate::record::{
-    CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, GradingRecord,
-    IndependenceRecord, KnownBy, PrimitiveRecord, Refutation, SystemRecord,
+    CertificateRow, ClaimRecord, CoefficientKind, Finding, FormTerm, KnownBy, PrimitiveRecord,
+    Refutation, SystemRecord,
 };
-use linform_scalar::published::{BigInt, Zero};
-use linform_scalar::{PrimeField, SplitMix};
-use rustc_hash::FxHashMap;
 use std::collections::{BTreeMap, BTreeSet};
 
 /// The elements that a claim compares: the target (or its derivative) and the columns of the system.
-struct Compared {
-    right: Expansion,
-    terms: Vec<Expansion>,
+pub(super) struct Compared {
+    pub(super) right: Expansion,
+    pub(super) terms: Vec<Expansion>,
     /// The terms, or for a target known by its derivative the pairs (derivative of term, term).
-    columns: Vec<Expansion>,
-    paired: bool,
+    pub(super) columns: Vec<Expansion>,
+    pub(super) paired: bool,
     /// The number of leading symbols whose monomials are compared: the generators, and the variable where the coefficients
     /// are constants.
-    split: usize,
+    pub(super) split: usize,
 }
 
-fn wrong<T>(what: impl Into<String>) -> Result<T, CheckError> {
+pub(super) fn wrong<T>(what: impl Into<String>) -> Result<T, CheckError> {
     Err(CheckError::Wrong(what.into()))
 }
 
@@ -215,7 +212,7 @@ impl Check<'_> {
     }
 
     /// `Σ p b`, or its derivative, as numerator and denominator.
-    fn left_side(
+    pub(super) fn left_side(
         &self,
         claim: &ClaimRecord,
         form: &[FormTerm],
@@ -240,56 +237,6 @@ impl Check<'_> {
         let (numerator, denominator) = self.left_side(claim, form, compared)?;
         if numerator != self.arithmetic.product(&compared.right, &denominator)? {
             return wrong("the form was substituted and the two sides differ");
-        }
-        Ok(())
-    }
-
-    /// The kernel vanishes, is independent, and is all of it; the shift is 1.
-    fn check_family(
-        &self,
-        claim: &ClaimRecord,
-        kernel: &[Vec<FormTerm>],
-        shift: Option<&[FormTerm]>,
-        compared: &Compared,
-    ) -> Result<(), CheckError> {
-        // A form whose derivative is compared vanishes itself; without a varying coefficient its derivative does.
-        let terms: Vec<&Expansion> = compared.terms.iter().collect();
-        for form in kernel {
-            let value = if compared.paired {
-                self.arithmetic.form_value(form, &claim.terms, &terms)?.0
-            } else {
-                self.left_side(claim, form, compared)?.0
-            };
-            if !value.is_empty() {
-                return wrong("a form of the kernel does not vanish");
-            }
-        }
-        let forms: Vec<&[FormTerm]> = kernel.iter().map(Vec::as_slice).collect();
-        if self.rank_of_forms(&forms, &claim.terms) < kernel.len() {
-            return wrong("the forms of the kernel are dependent");
-        }
-        let (dimension, shifted) = if compared.paired {
-            let rank = self.rank(&terms, compared.split);
-            let one = self.arithmetic.one();
-            let with_one: Vec<&Expansion> =
-                std::iter::once(&one).chain(terms.iter().copied()).collect();
-            (
-                terms.len() - rank,
-                self.rank(&with_one, compared.split) == rank,
-            )
-        } else {
-            let columns: Vec<&Expansion> = compared.columns.iter().collect();
-            (columns.len() - self.rank(&columns, compared.split), false)
-        };
-        if kernel.len() != dimension || shift.is_some() != shifted || dimension == 0 && !shifted {
-            return wrong("the kernel does not have the dimension that the terms have");
-        }
-        if let Some(form) = shift {
-            let (numerator, denominator) =
-                self.arithmetic.form_value(form, &claim.terms, &terms)?;
-            if numerator != denominator {
-                return wrong("the form that should be 1 is not");
-            }
         }
         Ok(())
     }
@@ -341,75 +288,6 @@ impl Check<'_> {
             .map_err(named)
     }
 
-    /// Is the form the only one?
-    fn check_unique(&self, compared: &Compared) -> Result<(), CheckError> {
-        let columns: Vec<&Expansion> = compared.columns.iter().collect();
-        if self.rank(&columns, compared.split) == columns.len() {
-            return Ok(());
-        }
-        // Two forms with one derivative differ by a constant: the terms and 1 must be independent then.
-        let one = self.arithmetic.one();
-        let with_one: Vec<&Expansion> = std::iter::once(&one).chain(&compared.terms).collect();
-        if compared.paired && self.rank(&with_one, compared.split) == with_one.len() {
-            return Ok(());
-        }
-        wrong("the form is not the only one")
-    }
-
-    /// The rank of elements over the rational functions of the base, by their values modulo a prime at a point that nobody
-    /// chose. It never exceeds the rank sought, and falls short of it with a chance of about `degree · 2^-61`.
-    fn rank(&self, elements: &[&Expansion], split: usize) -> usize {
-        let point = self.point();
-        let mut rows: FxHashMap<Box<[u32]>, Vec<u64>> = FxHashMap::default();
-        for (column, element) in elements.iter().enumerate() {
-            for (monomial, entry) in element.split(split) {
-                let row = rows
-                    .entry(monomial)
-                    .or_insert_with(|| vec![0; elements.len()]);
-                row[column] = entry.residue(RANK_PRIME, &point).unwrap_or(0);
-            }
-        }
-        rank_modulo(rows.into_values(), RANK_PRIME)
-    }
-
-    /// The rank of the coefficient vectors of forms.
-    fn rank_of_forms(&self, forms: &[&[FormTerm]], texts: &[String]) -> usize {
-        let point = self.point();
-        let rows = forms.iter().map(|form| {
-            let mut row = vec![0; texts.len()];
-            let mut used = vec![false; texts.len()];
-            for FormTerm { term, coefficient } in *form {
-                let Some(place) =
-                    (0..texts.len()).find(|&place| texts[place] == *term && !used[place])
-                else {
-                    continue;
-                };
-                used[place] = true;
-                let residue = |value| self.arithmetic.lift(value).residue(RANK_PRIME, &point);
-                let (n, d) = (
-                    residue(&coefficient.numerator),
-                    residue(&coefficient.denominator),
-                );
-                if let (Some(n), Some(d)) = (n, d) {
-                    row[place] = quotient_modulo(n, d, RANK_PRIME);
-                }
-            }
-            row
-        });
-        rank_modulo(rows.collect::<Vec<_>>().into_iter(), RANK_PRIME)
-    }
-
-    /// A point for ranks.
-    fn point(&self) -> Vec<u64> {
-        let mut random = SplitMix::new(0x5241_4E4B);
-        self.arithmetic
-            .prepared
-            .symbols
-            .iter()
-            .map(|_| random.next_word() % RANK_PRIME)
-            .collect()
-    }
-
     /// `Σ y · (row of the columns) = 0` and `Σ y · (row of the right side) = value ≠ 0`.
     fn check_contradiction(
         &self,
@@ -459,7 +337,11 @@ impl Check<'_> {
     }
 
     /// The rows of an element: the monomials in the first symbols, by name, with their cofactors in the rest.
-    fn split_rows(&self, element: &Expansion, split: usize) -> BTreeMap<String, Expansion> {
+    pub(super) fn split_rows(
+        &self,
+        element: &Expansion,
+        split: usize,
+    ) -> BTreeMap<String, Expansion> {
         let names = &self.arithmetic.prepared.symbols;
         let rows = element.split(split).into_iter();
         rows.map(|(leading, cofactor)| (row_name(&leading, names), cofactor))
@@ -514,63 +396,6 @@ impl Check<'_> {
         }
         wrong("the coefficients are those of a primitive")
     }
-
-    /// The determinant of the square block on the given rows must not vanish modulo the prime at the point. For the form of a
-    /// target known by its derivative the terms and 1 may serve as columns instead of the pairs.
-    fn check_independence(
-        &self,
-        independence: &IndependenceRecord,
-        compared: &Compared,
-        of_the_form: bool,
-    ) -> Result<(), CheckError> {
-        let IndependenceRecord { rows, prime, .. } = independence;
-        if *prime < 3 || *prime >= 1 << 62 || PrimeField::new(*prime).is_none() {
-            return wrong("the witness of uniqueness has no prime");
-        }
-        let pairs: Vec<&Expansion> = compared.columns.iter().collect();
-        if rows.len() == pairs.len() && self.is_regular(independence, &pairs, compared.split) {
-            return Ok(());
-        }
-        let one = self.arithmetic.one();
-        let terms: Vec<&Expansion> = std::iter::once(&one).chain(&compared.terms).collect();
-        if of_the_form
-            && compared.paired
-            && rows.len() == terms.len()
-            && self.is_regular(independence, &terms, compared.split)
-        {
-            return Ok(());
-        }
-        wrong("the determinant that should show uniqueness vanishes, or has the wrong shape")
-    }
-
-    /// Is the square block of the columns on the rows of the witness regular?
-    fn is_regular(
-        &self,
-        independence: &IndependenceRecord,
-        columns: &[&Expansion],
-        split: usize,
-    ) -> bool {
-        let IndependenceRecord { rows, prime, point } = independence;
-        let names = &self.arithmetic.prepared.symbols;
-        let place: Vec<u64> = names
-            .iter()
-            .map(|name| point.get(name).copied().unwrap_or(0))
-            .collect();
-        let mut matrix = vec![vec![0u64; columns.len()]; rows.len()];
-        for (column, element) in columns.iter().enumerate() {
-            let entries = self.split_rows(element, split);
-            for (row, monomial) in rows.iter().enumerate() {
-                let Some(entry) = entries.get(monomial) else {
-                    continue;
-                };
-                match entry.residue(*prime, &place) {
-                    Some(value) => matrix[row][column] = value,
-                    None => return false,
-                }
-            }
-        }
-        rank_modulo(matrix.into_iter(), *prime) == rows.len()
-    }
 }
 
 fn row_name(exponents: &[u32], names: &[String]) -> String {
@@ -581,9 +406,6 @@ fn row_name(exponents: &[u32], names: &[String]) -> String {
         text
     }
 }
-
-/// The Mersenne prime by which ranks are computed.
-const RANK_PRIME: u64 = (1 << 61) - 1;
 
 /// Are the coefficients of the kind that the claim admits?
 fn check_kind(form: &[FormTerm], kind: CoefficientKind) -> Result<(), CheckError> {
@@ -618,108 +440,4 @@ fn check_constants(finding: &Finding) -> Result<(), CheckError> {
         return wrong("a coefficient that should be constant contains the variable");
     }
     Ok(())
-}
-
-fn product_modulo(a: u64, b: u64, prime: u64) -> u64 {
-    (u128::from(a) * u128::from(b) % u128::from(prime)) as u64
-}
-
-/// `a/b`, by Fermat; 0 if `b` is 0.
-fn quotient_modulo(a: u64, b: u64, prime: u64) -> u64 {
-    let (mut base, mut exponent, mut result) = (b, prime - 2, a);
-    while exponent > 0 {
-        if exponent & 1 == 1 {
-            result = product_modulo(result, base, prime);
-        }
-        base = product_modulo(base, base, prime);
-        exponent >>= 1;
-    }
-    result
-}
-
-/// The rank of the rows, by plain elimination modulo a prime, written for the check alone.
-fn rank_modulo(rows: impl Iterator<Item = Vec<u64>>, prime: u64) -> usize {
-    // Reduced rows with the place of their leading 1.
-    let mut basis: Vec<(usize, Vec<u64>)> = Vec::new();
-    for mut row in rows {
-        for (pivot, known) in &basis {
-            let factor = row[*pivot];
-            if factor != 0 {
-                for (target, value) in row.iter_mut().zip(known) {
-                    let negative = prime - product_modulo(factor, *value, prime);
-                    *target =
-                        ((u128::from(*target) + u128::from(negative)) % u128::from(prime)) as u64;
-                }
-            }
-        }
-        if basis.len() == row.len() {
-            break;
-        }
-        if let Some(pivot) = row.iter().position(|&value| value != 0) {
-            let leading = row[pivot];
-            row.iter_mut()
-                .for_each(|value| *value = quotient_modulo(*value, leading, prime));
-            basis.push((pivot, row));
-        }
-    }
-    basis.len()
-}
-
-/// Do the weights make every element homogeneous, and the derivation too?
-pub(super) fn grading_is_right(
-    grading: &GradingRecord,
-    prepared: &Prepared,
-    elements: &[(Expansion, Option<usize>)],
-) -> bool {
-    let Ok(modulus) = grading.modulus.parse::<BigInt>() else {
-        return false;
-    };
-    let Ok(derivation) = grading.derivation.parse::<BigInt>() else {
-        return false;
-    };
-    let weights: Option<Vec<BigInt>> = prepared
-        .symbols
-        .iter()
-        .map(|name| {
-            grading
-                .weights
-                .get(name)
-                .and_then(|weight| weight.parse().ok())
-        })
-        .collect();
-    let Some(weights) = weights else { return false };
-    let vanishes = |value: BigInt| {
-        if modulus.is_zero() {
-            value.is_zero()
-        } else {
-            (value % &modulus).is_zero()
-        }
-    };
-    let weight = |exponents: &[u32]| -> BigInt {
-        exponents
-            .iter()
-            .zip(&weights)
-            .map(|(e, w)| w * BigInt::from(*e))
-            .sum()
-    };
-    // The variable has derivative 1, of weight 0.
-    if prepared
-        .variable()
-        .is_some_and(|variable| !vanishes(&weights[variable] + &derivation))
-    {
-        return false;
-    }
-    elements.iter().all(|(element, generator)| {
-        let mut terms = element.monomials().map(weight);
-        match generator {
-            Some(generator) => {
-                let expected = &weights[*generator] + &derivation;
-                terms.all(|found| vanishes(found - &expected))
-            }
-            None => match terms.next() {
-                Some(first) => terms.all(|found| vanishes(found - &first)),
-                None => true,
-            },
-        }
-    })
 }

@@ -8,6 +8,9 @@
 mod arithmetic;
 mod claim;
 mod expansion;
+mod grading;
+mod modular;
+mod uniqueness;
 
 use crate::prepare::{PrepareError, PrepareLimits, prepare_within};
 use crate::program::NodeId;
@@ -207,7 +210,7 @@ impl Check<'_> {
             }
         }
         for grading in &record.gradings {
-            if !claim::grading_is_right(grading, prepared, &pairs) {
+            if !grading::grading_is_right(grading, prepared, &pairs) {
                 verification.problems.push(
                     "a grading in the result does not make the derivation and the laws homogeneous"
                         .to_owned(),
