@@ -13,4 +13,5 @@ mod write;
 
 pub use error::ReadError;
 pub use read::{Digest, LARGEST_FILE, Read, read_json};
+pub(crate) use write::coefficients_word;
 pub use write::json;

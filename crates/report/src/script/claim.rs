@@ -3,22 +3,30 @@
 use super::dialect::{list, quoted};
 use super::emitter::Emitter;
 use super::error::ScriptError;
+use crate::json::coefficients_word;
 use crate::sanitise::excerpt;
 use linform_engine::record::{
     ClaimRecord, CoefficientKind, Finding, FormTerm, IndependenceRecord, KnownBy, Refutation,
 };
-use linform_engine::{Arithmetic, Instance, NodeId, Operation, Prepared, TermList};
+use linform_engine::{Instance, NodeId, Operation, Prepared, TermList};
 
-/// The names of the elements that the equations of a claim compare.
+/// What the equations of a claim compare.
 struct Compared {
     target: String,
     terms: Vec<String>,
-    /// The columns of the system: the terms, or derivatives and terms by turns.
-    columns: Vec<String>,
-    /// The derivatives of the terms, where the target is known by its derivative.
-    derivatives: Vec<String>,
+    known: Known,
     /// How many of the symbols the monomials of the rows are made of.
     split: usize,
+}
+
+/// How a target is known; the preludes say what is compared in each case.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Known {
+    Value = 0,
+    /// By its derivative, where no coefficient contains the variable.
+    ConstantDerivative = 1,
+    /// By its derivative, where coefficients may contain the variable.
+    Derivative = 2,
 }
 
 /// Values of nodes, shared by all claims.
@@ -42,29 +50,42 @@ pub(super) fn write(
         emitter.out.push_str(&note);
         return Ok(());
     }
-    let list_of_terms = instance
-        .alternatives
-        .iter()
-        .find(|terms| terms.texts == claim.terms);
-    let list_of_terms = list_of_terms.ok_or_else(|| {
+    let kind = kind_asked(prepared, instance);
+    let wrong = |what: &str| {
         ScriptError::new(format!(
-            "the terms of {} are not those of the spec",
+            "{what} of {} are not those of the spec",
             excerpt(&instance.title())
         ))
-    })?;
+    };
+    if claim.target != instance.target_text || claim.coefficients != kind {
+        return Err(wrong("the target and the kind of coefficients"));
+    }
+    let place = instance
+        .alternatives
+        .iter()
+        .position(|terms| terms.texts == claim.terms);
+    let place = place.ok_or_else(|| wrong("the terms"))?;
+    // A shorter list than the longest refutes nothing.
+    if matches!(claim.finding, Finding::Refuted(_)) && place + 1 < instance.alternatives.len() {
+        return Err(wrong("the terms"));
+    }
+    let list_of_terms = &instance.alternatives[place];
     let compared = compared(emitter, prepared, values, claim, instance, list_of_terms)?;
-    let by_derivative = emitter.dialect.truth(claim.known_by == KnownBy::Derivative);
-    let target = compared.target.as_str();
+    let head = format!(
+        "{title}, {}, {}, {}, {}, {}",
+        compared.target,
+        list(compared.terms.iter().cloned()),
+        compared.known as usize,
+        compared.split,
+        quoted(coefficients_word(kind)),
+    );
     let form = |emitter: &Emitter<'_>, parts: &[FormTerm]| {
         emitter.form(parts, &claim.terms, &compared.terms)
     };
     let statement = match &claim.finding {
         Finding::Unsettled(_) => return Ok(()),
         Finding::Holds { form: found } => {
-            format!(
-                "holds({title}, {target}, {by_derivative}, {})",
-                form(emitter, found)?
-            )
+            format!("holds({head}, {})", form(emitter, found)?)
         }
         Finding::Undetermined {
             particular,
@@ -74,12 +95,16 @@ pub(super) fn write(
             let particular = form(emitter, particular)?;
             let kernel = kernel
                 .iter()
-                .chain(shift)
-                .map(|vector| form(emitter, vector))
+                .map(|vector| emitter.whole_form(vector, &claim.terms, &compared.terms))
+                .collect::<Result<Vec<_>, _>>()?;
+            let ones = shift
+                .iter()
+                .map(|ones| form(emitter, ones))
                 .collect::<Result<Vec<_>, _>>()?;
             format!(
-                "family({title}, {target}, {by_derivative}, {particular}, {})",
-                list(kernel)
+                "family({head}, {particular}, {}, {})",
+                list(kernel),
+                list(ones)
             )
         }
         Finding::Refuted(Refutation::Contradiction { rows, value }) => {
@@ -92,11 +117,7 @@ pub(super) fn write(
                 ));
             }
             let value = polynomial(emitter, value)?;
-            let columns = list(compared.columns.iter().cloned());
-            format!(
-                "contradiction({title}, {target}, {columns}, {}, {value})",
-                list(equations)
-            )
+            format!("contradiction({head}, {}, {value})", list(equations))
         }
         Finding::Refuted(Refutation::OtherCoefficients {
             form: only,
@@ -104,16 +125,16 @@ pub(super) fn write(
         }) => {
             let only = form(emitter, only)?;
             let witness = witness(emitter, prepared, &compared, independence)?;
-            format!("other({title}, {target}, {by_derivative}, {only}, {witness})")
+            format!("other({head}, {only}, {witness})")
         }
         Finding::Refuted(Refutation::NotAPrimitive {
             coefficients,
             derivatives,
             independence,
         }) => {
-            let pairs = pairs(emitter, claim, &compared, coefficients, derivatives)?;
+            let pairs = pairs(emitter, claim, coefficients, derivatives)?;
             let witness = witness(emitter, prepared, &compared, independence)?;
-            format!("no_primitive({title}, {target}, {pairs}, {witness})")
+            format!("no_primitive({head}, {pairs}, {witness})")
         }
     };
     emitter.statement(&statement);
@@ -151,37 +172,30 @@ fn compared(
     let name = |node: &NodeId| values[node.position()].clone().unwrap_or_default();
     let target = name(&right);
     let terms: Vec<String> = terms.nodes.iter().map(name).collect();
-    // The derivatives are columns of the system only; a claim that holds needs none of them by itself.
-    let needed = by_derivative && matches!(claim.finding, Finding::Refuted(_));
-    let derivatives = if needed {
-        terms
-            .iter()
-            .map(|term| emitter.derive(term))
-            .collect::<Result<Vec<_>, _>>()?
-    } else {
-        Vec::new()
-    };
     let constant = claim.coefficients == CoefficientKind::Constant;
-    let columns = match (needed, constant || prepared.variable().is_none()) {
-        (false, _) => terms.clone(),
-        (true, true) => derivatives.clone(),
-        (true, false) => derivatives
-            .iter()
-            .zip(&terms)
-            .flat_map(|(d, b)| [d.clone(), b.clone()])
-            .collect(),
-    };
     Ok(Compared {
         target,
         terms,
-        columns,
-        derivatives,
+        known: match (by_derivative, constant || prepared.variable().is_none()) {
+            (false, _) => Known::Value,
+            (true, true) => Known::ConstantDerivative,
+            (true, false) => Known::Derivative,
+        },
         split: if constant {
             prepared.constants().start
         } else {
             prepared.generators()
         },
     })
+}
+
+/// The kind of coefficients that the spec asks for.
+fn kind_asked(prepared: &Prepared, instance: &Instance) -> CoefficientKind {
+    match prepared.model.claims[instance.claim].coefficients {
+        linform_spec::Coefficients::Polynomial => CoefficientKind::Polynomial,
+        linform_spec::Coefficients::Rational => CoefficientKind::Rational,
+        linform_spec::Coefficients::Constant => CoefficientKind::Constant,
+    }
 }
 
 fn polynomial(
@@ -196,7 +210,7 @@ fn polynomial(
     Ok(emitter.coefficient(coefficient)?.0)
 }
 
-/// Columns, rows, prime and point of a witness of independence.
+/// Rows, prime and point of a witness of independence.
 fn witness(
     emitter: &Emitter<'_>,
     prepared: &Prepared,
@@ -213,19 +227,17 @@ fn witness(
         .iter()
         .map(|name| witness.point.get(name).copied().unwrap_or(0).to_string());
     Ok(format!(
-        "{}, {}, {}, {}",
-        list(compared.columns.iter().cloned()),
+        "{}, {}, {}",
         list(rows),
         witness.prime,
         list(point)
     ))
 }
 
-/// For each term the coefficients `p` and `r`, the derivative of the term, and the term.
+/// For each term the coefficients `p` and `r`.
 fn pairs(
     emitter: &Emitter<'_>,
     claim: &ClaimRecord,
-    compared: &Compared,
     coefficients: &[FormTerm],
     derivatives: &[FormTerm],
 ) -> Result<String, ScriptError> {
@@ -236,11 +248,10 @@ fn pairs(
                 .map(|(above, below)| format!("[{above}, {below}]")),
             None => Ok("[c(0), c(1)]".to_owned()),
         };
-    let places = compared.derivatives.iter().zip(&compared.terms);
     let mut pairs = Vec::new();
-    for (text, (derivative, term)) in claim.terms.iter().zip(places) {
+    for text in &claim.terms {
         let (p, r) = (find(coefficients, text)?, find(derivatives, text)?);
-        pairs.push(format!("[{p}, {r}, {derivative}, {term}]"));
+        pairs.push(format!("[{p}, {r}]"));
     }
     Ok(list(pairs))
 }

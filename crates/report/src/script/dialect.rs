@@ -68,6 +68,14 @@ impl Dialect {
         }
     }
 
+    /// The point `Z` at which ranks are taken.
+    pub(super) fn point(self) -> &'static str {
+        match self {
+            Dialect::Sympy => "Z = [dice.randrange(P) for x in X]\n",
+            Dialect::Gp => "Z = vector(#X, i, Mod(random(P), P));\n",
+        }
+    }
+
     /// The count at the end, and the exit status.
     pub(super) fn epilogue(self) -> &'static str {
         match self {
@@ -86,11 +94,6 @@ impl Dialect {
             (Dialect::Sympy, _) => format!("{base}**{exponent}"),
             (Dialect::Gp, _) => format!("{base}^{exponent}"),
         }
-    }
-
-    /// A truth value.
-    pub(super) fn truth(self, value: bool) -> &'static str {
-        if value { "1" } else { "0" }
     }
 
     pub(super) fn integer(self, value: &BigInt) -> String {

@@ -1,5 +1,6 @@
 //! The arithmetic whose elements are names of a script: evaluating a program in it writes the program down.
 
+use super::claim::Known;
 use super::dialect::{Dialect, list, quoted, symbol};
 use super::error::ScriptError;
 use crate::sanitise::excerpt;
@@ -101,21 +102,31 @@ impl<'a> Emitter<'a> {
         texts: &[String],
         terms: &[String],
     ) -> Result<String, ScriptError> {
-        let mut parts = Vec::new();
-        let mut used = vec![false; texts.len()];
-        for part in form {
-            let place = (0..texts.len()).find(|&place| texts[place] == part.term && !used[place]);
-            let place = place.filter(|place| *place < terms.len()).ok_or_else(|| {
-                ScriptError::new(format!(
-                    "the term {} of a form is not among those offered",
-                    excerpt(&part.term)
-                ))
-            })?;
-            used[place] = true;
-            let (above, below) = self.coefficient(&part.coefficient)?;
-            parts.push(format!("[{above}, {below}, {}]", terms[place]));
+        let places = places(form, texts, terms)?.into_iter().zip(form);
+        let parts = places.map(|(place, part)| self.part(part, &terms[place]));
+        Ok(list(parts.collect::<Result<Vec<_>, _>>()?))
+    }
+
+    /// The parts of a form, one for each term: those that the form leaves out are 0.
+    pub(super) fn whole_form(
+        &self,
+        form: &[FormTerm],
+        texts: &[String],
+        terms: &[String],
+    ) -> Result<String, ScriptError> {
+        let mut parts: Vec<String> = terms
+            .iter()
+            .map(|term| format!("[c(0), c(1), {term}]"))
+            .collect();
+        for (place, part) in places(form, texts, terms)?.into_iter().zip(form) {
+            parts[place] = self.part(part, &terms[place])?;
         }
         Ok(list(parts))
+    }
+
+    fn part(&self, part: &FormTerm, term: &str) -> Result<String, ScriptError> {
+        let (above, below) = self.coefficient(&part.coefficient)?;
+        Ok(format!("[{above}, {below}, {term}]"))
     }
 
     /// The exponents of a monomial in the first `split` symbols.
@@ -135,6 +146,27 @@ impl<'a> Emitter<'a> {
         }
         Ok(list(exponents.iter().map(u32::to_string)))
     }
+}
+
+/// The place of each part of a form among the terms: a text that stands there twice is used from left to right.
+fn places(
+    form: &[FormTerm],
+    texts: &[String],
+    terms: &[String],
+) -> Result<Vec<usize>, ScriptError> {
+    let mut used = vec![false; texts.len().min(terms.len())];
+    let places = form.iter().map(|part| {
+        let place = (0..used.len()).find(|&place| texts[place] == part.term && !used[place]);
+        let place = place.ok_or_else(|| {
+            ScriptError::new(format!(
+                "the term {} of a form is not among those offered",
+                excerpt(&part.term)
+            ))
+        })?;
+        used[place] = true;
+        Ok(place)
+    });
+    places.collect()
 }
 
 impl Arithmetic for Emitter<'_> {
@@ -196,7 +228,16 @@ impl Arithmetic for Emitter<'_> {
         let terms: Vec<String> = terms.iter().map(|term| (*term).clone()).collect();
         let form = self.form(&found.form, &element.terms, &terms)?;
         let title = quoted(&format!("form of {}", element.name));
-        Ok(self.step(&format!("primitive({title}, {derivative}, {form})")))
+        let known = match self.prepared.variable() {
+            Some(_) => Known::Derivative,
+            None => Known::ConstantDerivative,
+        };
+        Ok(self.step(&format!(
+            "primitive({title}, {derivative}, {}, {}, {}, {form})",
+            list(terms),
+            known as usize,
+            self.prepared.generators(),
+        )))
     }
 
     fn yielded(

@@ -58,6 +58,9 @@ fn script(
     }
     head.push_str(dialect.prelude());
     head.push_str(&dialect.symbols(prepared.symbols.len()));
+    let variable = prepared.variable().map(dialect::symbol);
+    head.push_str(&dialect.statement(&format!("V = {}", list(variable))));
+    head.push_str(dialect.point());
     emitter.out = head;
 
     let mut values: Vec<Option<String>> = vec![None; prepared.program.len()];

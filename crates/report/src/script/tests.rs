@@ -1,5 +1,5 @@
 use super::*;
-use linform_engine::record::{Finding, Refutation};
+use linform_engine::record::{CoefficientKind, Finding, Refutation};
 use linform_engine::{Options, PrepareLimits, Silent, prepare, solve};
 use linform_scalar::Unlimited;
 
@@ -81,29 +81,30 @@ const GP: &str = r#"x0 = 'x0;
 x1 = 'x1;
 x2 = 'x2;
 X = [x0, x1, x2];
+V = [x2];
+Z = vector(#X, i, Mod(random(P), P));
 v0 = x2*x0;
 DX = [x1, v0, c(1)];
 v1 = x0^2;
 v2 = x1^2;
-v3 = primitive("form of w[0]", v1, [[x2, c(1), v1], [c(-1), c(1), v2]]);
+v3 = primitive("form of w[0]", v1, [v1, v2], 2, 2, [[x2, c(1), v1], [c(-1), c(1), v2]]);
 v4 = v3*x0;
 v5 = x0^3;
 v6 = x0*v2;
-holds("product", v4, 0, [[x2, c(1), v5], [c(-1), c(1), v6]]);
+holds("product", v4, [v5, v6], 0, 2, "polynomial", [[x2, c(1), v5], [c(-1), c(1), v6]]);
 v7 = c(1, 2)*x1;
 v8 = v0 + v7;
-holds("source", v8, 0, [[x2, c(1), x0], [c(1, 2), c(1), x1]]);
+holds("source", v8, [x0, x1], 0, 2, "polynomial", [[x2, c(1), x0], [c(1, 2), c(1), x1]]);
 v9 = form([[x2, c(1), x1], [c(1, 2), c(1), x0]]);
 v10 = v9[1];
-holds("yielded", v10, 0, [[c(1, 2), c(1), x0], [x2, c(1), x1]]);
-holds("integral", v1, 1, [[x2, c(1), v1], [c(-1), c(1), v2]]);
+holds("yielded", v10, [x0, x1], 0, 2, "polynomial", [[c(1, 2), c(1), x0], [x2, c(1), x1]]);
+holds("integral", v1, [v1, v2], 2, 2, "polynomial", [[x2, c(1), v1], [c(-1), c(1), v2]]);
 v11 = x0*x1;
-contradiction("contradiction", v11, [v1, v2], [[[1, 1], c(1)]], c(1));
+contradiction("contradiction", v11, [v1, v2], 0, 2, "polynomial", [[[1, 1], c(1)]], c(1));
 v12 = x2*v1;
-other("rational only", v1, 0, [[c(1), x2, v12]], [v12], [[2, 0]], P, T);
-v13 = D(v1);
-no_primitive("no primitive", v1, [[[c(0), c(1)], [c(1), c(1)], v13, v1]], [v13, v1], [[2, 0], [1, 1]], P, [0, 0, 0]);
-family("a \"family\"", v1, 0, [[c(1), c(1), v1]], [[[c(-1)*x2, c(1), v1], [c(1), c(1), v12]]]);
+other("rational only", v1, [v12], 0, 2, "polynomial", [[c(1), x2, v12]], [[2, 0]], P, T);
+no_primitive("no primitive", v1, [v1], 2, 2, "polynomial", [[[c(0), c(1)], [c(1), c(1)]]], [[2, 0], [1, 1]], P, [0, 0, 0]);
+family("a \"family\"", v1, [v1, v12], 0, 2, "polynomial", [[c(1), c(1), v1]], [[[c(-1)*x2, c(1), v1], [c(1), c(1), v12]]], []);
 print(passed, " checks passed, ", failed, " failed");
 quit(failed > 0);
 "#;
@@ -140,9 +141,9 @@ fn both_languages_get_the_same_program() {
         let statements = statements(script)
             .lines()
             .map(|line| line.trim_end_matches(';').replace("**", "^"));
-        // The declarations of symbols, the parts of a pair and the end differ.
+        // The declarations of symbols, the point, the parts of a pair and the end differ.
         let statements =
-            statements.filter(|line| !line.starts_with(['x', 'X', 'p', 'q', 'i', ' ']));
+            statements.filter(|line| !line.starts_with(['x', 'X', 'Z', 'p', 'q', 'i', ' ']));
         statements
             .filter(|line| !line.starts_with("v10 = "))
             .collect()
@@ -152,6 +153,37 @@ fn both_languages_get_the_same_program() {
     assert!(common(&python).len() > 20);
     assert!(python.starts_with("# Airy / function"), "{python}");
     assert!(python.ends_with("if failed:\n    raise SystemExit(1)\n"));
+}
+
+#[test]
+fn a_family_is_checked_as_a_whole_and_its_shift_apart() {
+    let spec = SPEC.split("[[claim]]").next().unwrap().to_owned()
+        + "[[claim]]\nname = \"a\"\nderivative = \"A'\"\nterms = [\"A\", \"2\"]\nexpect = \"undetermined\"\n"
+        + "[[claim]]\nname = \"b\"\nderivative = \"A'\"\nterms = [\"A\", \"2\"]\ncoefficients = \"constant\"\nexpect = \"undetermined\"\n";
+    let (record, prepared) = solved(&spec);
+    let script = gp(&record, &prepared).unwrap();
+    // A target known by its derivative: the form 1/2 · 2 is 1. With constant coefficients its derivative vanishes.
+    for line in [
+        "family(\"a\", x1, [x0, c(2)], 2, 2, \"polynomial\", [[c(1), c(1), x0]], [], [[[c(1, 2), c(1), c(2)]]]);\n",
+        "family(\"b\", x1, [x0, c(2)], 1, 3, \"constant\", [[c(1), c(1), x0]], [[[c(0), c(1), x0], [c(1), c(1), c(2)]]], []);\n",
+    ] {
+        assert!(script.contains(line), "{line}{}", statements(&script));
+    }
+}
+
+#[test]
+fn only_the_longest_list_of_terms_refutes() {
+    let spec = SPEC.split("[[claim]]").next().unwrap().to_owned()
+        + "[[claim]]\nname = \"open\"\ntarget = \"A\"\nterms = \"A^n*A' for n = 1..\"\nat_most = 3\nexpect = \"refuted\"\n";
+    let (mut record, prepared) = solved(&spec);
+    assert!(
+        gp(&record, &prepared)
+            .unwrap()
+            .contains("\ncontradiction(\"open\"")
+    );
+    record.claims[0].terms.pop();
+    let error = gp(&record, &prepared).unwrap_err().to_string();
+    assert!(error.starts_with("the terms of \"open\""), "{error}");
 }
 
 #[test]
@@ -185,6 +217,14 @@ fn a_record_of_another_spec_is_refused() {
             .unwrap_err()
             .to_string()
             .contains("the terms of")
+    );
+
+    let mut other_kind = record.clone();
+    other_kind.claims[1].coefficients = CoefficientKind::Rational;
+    let error = sympy(&other_kind, &prepared).unwrap_err().to_string();
+    assert!(
+        error.starts_with("the target and the kind of coefficients of \"source\""),
+        "{error}"
     );
 
     let mut no_form = record.clone();
