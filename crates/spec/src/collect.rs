@@ -10,6 +10,7 @@ const MAX_DIAGNOSTICS: usize = 100;
 pub(crate) struct Collector {
     found: Vec<Found>,
     left_out: usize,
+    withheld: usize,
 }
 
 #[derive(Debug)]
@@ -51,6 +52,16 @@ impl Collector {
     /// Is there room for more? Costly help is not worth its time otherwise.
     pub(crate) fn is_full(&self) -> bool {
         self.found.len() >= MAX_DIAGNOSTICS
+    }
+
+    /// Something is wrong or unknown, but may be the consequence of a mistake that is noted.
+    pub(crate) fn withhold(&mut self) {
+        self.withheld += 1;
+    }
+
+    /// A number that grows with everything noted or withheld.
+    pub(crate) fn count(&self) -> usize {
+        self.found.len() + self.left_out + self.withheld
     }
 
     pub(crate) fn is_empty(&self) -> bool {

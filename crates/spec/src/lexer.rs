@@ -62,13 +62,13 @@ const SIGNS: [(&str, &str); 22] = [
 ];
 
 /// Can a name start with this character?
-fn starts_name(c: char) -> bool {
+pub(crate) fn starts_name(c: char) -> bool {
     // The Weierstrass sign counts as mathematics, not as a letter, in Unicode.
     c.is_alphabetic() || c == '_' || c == '℘'
 }
 
 /// Can a name go on with this character?
-fn continues_name(c: char) -> bool {
+pub(crate) fn continues_name(c: char) -> bool {
     starts_name(c) || c.is_ascii_digit()
 }
 

@@ -316,6 +316,10 @@ impl Scope<'_> {
             );
             return;
         }
+        if self.names.lost.symbols {
+            errors.withhold();
+            return;
+        }
         let mut candidates: Vec<&str> = constants.iter().map(String::as_str).collect();
         candidates.extend([&model.parameter, x, y, &model.function].map(String::as_str));
         self.names.note_unknown(

@@ -11,13 +11,22 @@ use crate::index::{Environment, MAX_INSTANCES, index_value};
 use crate::read::shorten;
 use crate::source::{Diagnostic, Span};
 
-/// Notes every mistake in a claim.
-pub(crate) fn check(names: &Names, claim: &Claim, errors: &mut Collector) {
+/// Notes every mistake in a claim; `words` stand for its indices where these could not be read.
+///
+/// True if nothing is wrong apart from the target, so that the sweeps can be tried out.
+pub(crate) fn check(
+    names: &Names,
+    claim: &Claim,
+    words: &[String],
+    errors: &mut Collector,
+) -> bool {
+    let before = errors.count();
     let place = match claim.target {
         Target::Data { .. } => Where::Data,
         Target::Value(_) | Target::Derivative(_) => Where::Ring,
     };
     let mut scope = Scope::new(names, place);
+    scope.assumed = words;
     for (number, sweep) in claim.sweeps.iter().enumerate() {
         scope.later = &claim.sweeps[number..];
         scope.sweep(sweep, RangeOf::Listing, errors);
@@ -37,16 +46,18 @@ pub(crate) fn check(names: &Names, claim: &Claim, errors: &mut Collector) {
         }
         scope.condition(condition, errors);
     }
+    check_terms(&mut scope, &claim.terms, errors);
+    for yielded in &claim.yields {
+        check_yield(names, claim, words, yielded, errors);
+    }
+    let right = errors.count() == before;
     match &claim.target {
         Target::Value(expr) | Target::Derivative(expr) => {
             scope.value(expr, errors);
         }
         Target::Data { .. } => {}
     }
-    check_terms(&mut scope, &claim.terms, errors);
-    for yielded in &claim.yields {
-        check_yield(names, claim, yielded, errors);
-    }
+    right
 }
 
 /// The variable in a condition `j = 3` when no range binds it.
@@ -99,7 +110,13 @@ fn check_length(claim: &Claim, errors: &mut Collector) {
     }
 }
 
-fn check_yield(names: &Names, claim: &Claim, yielded: &Yield, errors: &mut Collector) {
+fn check_yield(
+    names: &Names,
+    claim: &Claim,
+    words: &[String],
+    yielded: &Yield,
+    errors: &mut Collector,
+) {
     if matches!(claim.target, Target::Data { .. }) {
         errors.push(
             Diagnostic::new("a claim about numbers yields nothing", yielded.span)
@@ -108,6 +125,7 @@ fn check_yield(names: &Names, claim: &Claim, yielded: &Yield, errors: &mut Colle
         return;
     }
     let mut scope = Scope::new(names, Where::Ring);
+    scope.assumed = words;
     for sweep in &claim.sweeps {
         scope
             .indices

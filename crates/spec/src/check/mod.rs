@@ -20,15 +20,17 @@ use scope::{RangeOf, Scope, Where};
 
 /// Notes every mistake in a draft.
 pub(crate) fn check(draft: &Draft, errors: &mut Collector) {
-    if draft.ring.is_none() && !draft.incomplete {
+    let no_ring = draft.ring.is_none();
+    if no_ring && !draft.lost.everything && !draft.lost.symbols {
         errors.push_absence(
             Diagnostic::new("there is no [ring]", Span::default()).help(
                 "declare the ring: `[ring]` with `generators = […]`, and `[ring.derivative]`",
             ),
         );
-        return;
     }
-    let names = Names::new(draft, errors);
+    let mut names = Names::new(draft, errors);
+    names.lost.symbols |= no_ring;
+    let names = names;
     for (_, expr) in draft.derivatives.values() {
         Scope::new(&names, Where::Derivation).value(expr, errors);
     }
@@ -42,14 +44,21 @@ pub(crate) fn check(draft: &Draft, errors: &mut Collector) {
         check_model(&names, model, errors);
     }
     check_solution(&names, draft, errors);
+    let mut right = Vec::new();
     for (number, claim) in draft.claims.iter().enumerate() {
-        if !draft.unreadable_claims.contains(&number) {
-            claims::check(&names, claim, errors);
+        let unreadable = draft.unreadable_claims.get(&number);
+        // Without any word for its indices nothing sensible can be said of a claim.
+        if unreadable.is_some_and(Vec::is_empty) {
+            continue;
+        }
+        let words = unreadable.map_or(&[][..], Vec::as_slice);
+        if claims::check(&names, claim, words, errors) && !draft.flawed_claims.contains(&number) {
+            right.push(claim);
         }
     }
     // Trying the sweeps out makes sense only where everything is known.
-    if errors.is_empty() {
-        rehearse::rehearse(&draft.claims, errors);
+    if !draft.lost.everything {
+        rehearse::rehearse(&right, errors);
     }
 }
 
@@ -229,7 +238,8 @@ fn check_solution(names: &Names, draft: &Draft, errors: &mut Collector) {
     let Some(solution) = &draft.solution else {
         return;
     };
-    if draft.variable.is_none() && !draft.incomplete {
+    let hidden = draft.lost.everything || draft.lost.variable || names.lost.symbols;
+    if draft.variable.is_none() && !hidden {
         errors.push_absence(
             Diagnostic::new(
                 "a solution needs a variable, and the ring has none",

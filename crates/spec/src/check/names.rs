@@ -2,7 +2,7 @@
 
 use crate::collect::Collector;
 use crate::model::split_primes;
-use crate::read::{Declared, Draft, count_indices, shorten};
+use crate::read::{Declared, Draft, Lost, count_indices, shorten};
 use crate::source::{Diagnostic, Span};
 use crate::suggest::did_you_mean;
 use indexmap::IndexMap;
@@ -21,15 +21,15 @@ pub(crate) struct Names {
     models: IndexMap<String, Span>,
     variable: Option<String>,
     constants: Vec<String>,
-    /// May an unknown name be known after all, its declaration being lost?
-    pub(crate) incomplete: bool,
+    /// Whether an unknown name may be known after all, its declaration being lost.
+    pub(crate) lost: Lost,
 }
 
 impl Names {
     /// Collects the names, noting those that clash.
     pub(crate) fn new(draft: &Draft, errors: &mut Collector) -> Names {
         let mut names = Names {
-            incomplete: draft.incomplete,
+            lost: draft.lost.clone(),
             variable: draft.variable.as_ref().map(|v| v.name.clone()),
             constants: draft.constants.iter().map(|c| c.name.clone()).collect(),
             ..Names::default()
@@ -41,6 +41,13 @@ impl Names {
             names.add_symbol(other, false, errors);
         }
         for (name, law) in &draft.laws {
+            if let Some((_, symbol)) = names.symbols.get(name) {
+                errors.push(
+                    Diagnostic::new(format!("`{name}` is both a symbol and a law"), law.span)
+                        .also(*symbol, "the symbol")
+                        .help("rename one of them"),
+                );
+            }
             names.laws.insert(name.clone(), law.span);
         }
         for (name, family) in &draft.families {
@@ -152,7 +159,8 @@ impl Names {
 
     /// Notes that a law, family or model is not known.
     pub(crate) fn unknown(&self, kind: Kind, name: &str, span: Span, errors: &mut Collector) {
-        if self.incomplete || errors.is_full() {
+        if self.lost.hides(name) || errors.is_full() {
+            errors.withhold();
             return;
         }
         let known: Vec<&str> = match kind {
@@ -180,7 +188,8 @@ impl Names {
         help: &str,
         errors: &mut Collector,
     ) {
-        if self.incomplete || errors.is_full() {
+        if self.lost.hides(name) || errors.is_full() {
+            errors.withhold();
             return;
         }
         let help = match did_you_mean(name, candidates) {

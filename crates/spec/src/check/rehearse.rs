@@ -8,7 +8,7 @@ use crate::source::Diagnostic;
 const BUDGET: usize = 20_000;
 
 /// Notes claims without instances, and instances without terms.
-pub(crate) fn rehearse(claims: &[Claim], errors: &mut Collector) {
+pub(crate) fn rehearse(claims: &[&Claim], errors: &mut Collector) {
     let mut left = BUDGET;
     for claim in claims {
         if claim.is_open() || left == 0 || errors.is_full() {

@@ -31,6 +31,8 @@ pub(crate) struct Scope<'a> {
     pub(crate) place: Where<'a>,
     /// The index variables in scope, each with its place.
     pub(crate) indices: Vec<(String, Span)>,
+    /// Words that stand where index variables could not be read: each may be one unless it is a symbol.
+    pub(crate) assumed: &'a [String],
     /// The sweeps whose variables are not yet in scope, for help lines.
     pub(crate) later: &'a [Sweep],
 }
@@ -50,12 +52,15 @@ impl<'a> Scope<'a> {
             names,
             place,
             indices: Vec::new(),
+            assumed: &[],
             later: &[],
         }
     }
 
     pub(crate) fn binds(&self, name: &str) -> bool {
         self.indices.iter().any(|(index, _)| index == name)
+            || (self.assumed.iter().any(|word| word == name)
+                && self.names.symbol_span(name).is_none())
     }
 
     /// Brings an index variable into scope, unless it hides another name.

@@ -175,6 +175,10 @@ impl Scope<'_> {
             );
             return;
         }
+        if self.names.lost.symbols {
+            errors.withhold();
+            return;
+        }
         let indices = self.indices.iter().map(|(name, _)| name.as_str());
         let candidates = self.names.symbols().chain(indices).collect();
         let name = written(base, primes);

@@ -1,6 +1,7 @@
 //! `[[claim]]`
 
 use super::draft::{Draft, placeholder};
+use super::lost::Lost;
 use super::section::{Entry, Section, shorten};
 use super::{expression, terms};
 use crate::claim::{Claim, Coefficients, Target, Verdict, Yield};
@@ -32,6 +33,7 @@ const KEYS: [&str; 15] = [
 const DATA_KEYS: [&str; 5] = ["at", "value", "error", "degree", "weight"];
 
 pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collector) {
+    let before = errors.count();
     section.allow(&KEYS, errors);
     let name = name(section, draft, errors);
     let owner = format!("claim `{}`", shorten(&name));
@@ -39,8 +41,14 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
         let text = entry.text(errors)?;
         errors.take(parser::clauses(&text.value, &text.place))
     });
-    // Without its indices nothing sensible can be said of the rest of the claim.
-    let readable = clauses != Some(None);
+    if clauses == Some(None)
+        && let Some(entry) = section.get("for")
+    {
+        let mut indices = Lost::default();
+        indices.value(entry.value);
+        let words = indices.into_names();
+        draft.unreadable_claims.insert(draft.claims.len(), words);
+    }
     let (sweeps, conditions) = clauses.flatten().unwrap_or_default();
     let target = target(section, errors);
     let terms = section
@@ -67,11 +75,7 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
     let yields = section
         .get("yields")
         .and_then(|entry| entry.section("yields", errors))
-        .map_or_else(Vec::new, |table| {
-            let (yields, complete) = yields(&table, &owner, errors);
-            draft.incomplete |= !complete;
-            yields
-        });
+        .map_or_else(Vec::new, |table| yields(&table, &owner, draft, errors));
     let claim = Claim {
         sweeps,
         conditions,
@@ -91,8 +95,8 @@ pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collec
         span: section.span,
     };
     check_open(section, &claim, errors);
-    if !readable {
-        draft.unreadable_claims.insert(draft.claims.len());
+    if errors.count() > before {
+        draft.flawed_claims.insert(draft.claims.len());
     }
     draft.claims.push(claim);
 }
@@ -220,9 +224,14 @@ fn filled(entry: &Entry<'_>, errors: &mut Collector) -> Option<String> {
     Some(text.value)
 }
 
-/// The elements that a claim yields, and whether all of them could be read.
-fn yields(table: &Section<'_>, owner: &str, errors: &mut Collector) -> (Vec<Yield>, bool) {
-    let yields: Vec<_> = table
+/// The elements that a claim yields.
+fn yields(
+    table: &Section<'_>,
+    owner: &str,
+    draft: &mut Draft,
+    errors: &mut Collector,
+) -> Vec<Yield> {
+    table
         .entries()
         .iter()
         .filter_map(|entry| {
@@ -233,7 +242,10 @@ fn yields(table: &Section<'_>, owner: &str, errors: &mut Collector) -> (Vec<Yiel
                 format!("`{}`, yielded by {owner},", shorten(entry.key)),
                 errors,
             );
-            let (left, terms) = (left?, terms?);
+            let (Some(left), Some(terms)) = (left, terms) else {
+                draft.lost.text(&key.value);
+                return None;
+            };
             Some(Yield {
                 family: left.family,
                 pattern: left.pattern,
@@ -242,9 +254,7 @@ fn yields(table: &Section<'_>, owner: &str, errors: &mut Collector) -> (Vec<Yiel
                 span: key.place.whole(),
             })
         })
-        .collect();
-    let complete = yields.len() == table.entries().len();
-    (yields, complete)
+        .collect()
 }
 
 /// Open ranges need a bound, and a bound needs an open range.

@@ -1,5 +1,6 @@
 //! What the files say, before names are checked.
 
+use super::lost::Lost;
 use crate::claim::Claim;
 use crate::expression::{Expr, ExprKind};
 use crate::family::Family;
@@ -32,12 +33,14 @@ pub(crate) struct Draft {
     pub(crate) solution: Option<Solution>,
     pub(crate) models: IndexMap<String, DraftModel>,
     pub(crate) claims: Vec<Claim>,
-    /// The claims whose indices could not be read.
-    pub(crate) unreadable_claims: HashSet<usize>,
+    /// The claims in which something could not be read.
+    pub(crate) flawed_claims: HashSet<usize>,
+    /// The claims whose indices could not be read, with the words that stand in their place.
+    pub(crate) unreadable_claims: HashMap<usize, Vec<String>>,
     /// The claims by name.
     pub(crate) claim_spans: HashMap<String, Span>,
-    /// Is a part of the declarations lost, so that unknown names may be known after all?
-    pub(crate) incomplete: bool,
+    /// The declarations that could not be read: names unknown for want of them are no mistakes.
+    pub(crate) lost: Lost,
 }
 
 /// A family, whose arity is unknown when no rule could be read.

@@ -15,7 +15,7 @@ const MAX_RULES: usize = 1000;
 pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector) {
     let name = declared_key(entry, errors);
     let Some(section) = entry.section(format!("[family.{}]", shorten(entry.key)), errors) else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     section.allow(&["symmetric", "rules", "primitive_terms"], errors);
@@ -38,7 +38,7 @@ pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector)
         )
         .and_then(|entry| entry.texts(true, errors).map(|texts| (entry, texts)));
     let Some(name) = name else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     let mut rules: Vec<Rule> = Vec::new();

@@ -87,14 +87,14 @@ impl Reader<'_> {
                     ),
                 ),
             );
-            self.draft.incomplete = true;
+            self.draft.lost.everything = true;
             return;
         }
         // A byte order mark is no part of the text; it is skipped in the TOML reader too.
         let table = match DeTable::parse(text) {
             Ok(table) => table,
             Err(first) => {
-                self.draft.incomplete = true;
+                self.draft.lost.everything = true;
                 if text.len() > MAX_RECOVERED {
                     self.errors.push_syntax(syntax_error(file, &first));
                     return;
@@ -136,7 +136,7 @@ impl Reader<'_> {
                     .label(chain)
                     .help("take one of the includes away"),
             );
-            self.draft.incomplete = true;
+            self.draft.lost.everything = true;
             return;
         }
         if (0..self.sources.len()).any(|number| same(self, &number)) {
@@ -148,7 +148,7 @@ impl Reader<'_> {
                 Diagnostic::new(format!("more than {MAX_FILES} files"), span)
                     .help("put included files together"),
             );
-            self.draft.incomplete = true;
+            self.draft.lost.everything = true;
             return;
         }
         match (self.load)(&path) {
@@ -158,7 +158,7 @@ impl Reader<'_> {
                     Diagnostic::new(format!("cannot read `{path}`: {reason}"), span)
                         .help("the path is relative to the file that includes it"),
                 );
-                self.draft.incomplete = true;
+                self.draft.lost.everything = true;
             }
         }
     }

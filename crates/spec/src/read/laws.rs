@@ -10,14 +10,14 @@ use crate::model::Law;
 pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector) {
     let name = declared_key(entry, errors);
     let Some(section) = entry.section(format!("[law.{}]", entry.key), errors) else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     section.allow(&["log_derivative"], errors);
     let log_derivative =
         required_expression(&section, "log_derivative", "log_derivative = \"…\"", errors);
     let Some(name) = name else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     if let Some(there) = draft.laws.get(&name.name) {

@@ -5,6 +5,7 @@ mod draft;
 mod families;
 mod include;
 mod laws;
+mod lost;
 mod models;
 mod names;
 mod ring;
@@ -13,15 +14,17 @@ mod solution;
 
 pub(crate) use draft::{Declared, Draft, DraftFamily, DraftModel};
 pub(crate) use include::{Read, read_files};
+pub(crate) use lost::Lost;
 pub(crate) use section::shorten;
 
 use crate::collect::Collector;
 use crate::expression::Expr;
 use crate::parser;
 use crate::source::{Diagnostic, Span};
+use crate::suggest::did_you_mean;
 use crate::terms::Terms;
 use section::{Entry, File, Section, Text};
-use toml::de::DeTable;
+use toml::de::{DeTable, DeValue};
 
 /// The keys at the top of a file.
 const TOP: [&str; 8] = [
@@ -35,7 +38,9 @@ fn read_file(file: File<'_>, table: &DeTable<'_>, draft: &mut Draft, errors: &mu
     // Without a header, its keys seem to stand at the top: after a syntax error they are not told.
     let mut stray = Collector::default();
     if !top.allow(&TOP, &mut stray) {
-        draft.incomplete = true;
+        for entry in top.entries().iter().filter(|e| !TOP.contains(&e.key)) {
+            lose(entry, draft);
+        }
         errors.append_absences(stray);
     }
     if let Some(entry) = top.get("title") {
@@ -44,9 +49,17 @@ fn read_file(file: File<'_>, table: &DeTable<'_>, draft: &mut Draft, errors: &mu
             draft.title = title.map(|title| title.value);
         }
     }
-    if let Some(section) = top.section("ring", "[ring]", errors) {
-        ring::read(&section, draft, errors);
+    if let Some(entry) = top.get("ring") {
+        match entry.section("[ring]", errors) {
+            Some(section) => ring::read(&section, draft, errors),
+            None => draft.lost.ring(),
+        }
     }
+    // Without a table of laws, families or models it is open which there were to be.
+    let tables = ["law", "family", "model"].into_iter();
+    draft.lost.everything |= tables
+        .filter_map(|kind| top.get(kind))
+        .any(|entry| !matches!(entry.value.get_ref(), DeValue::Table(_)));
     for_each(&top, "law", errors, |entry, errors| {
         laws::read(entry, draft, errors);
     });
@@ -66,6 +79,28 @@ fn read_file(file: File<'_>, table: &DeTable<'_>, draft: &mut Draft, errors: &mu
                 break;
             }
             claims::read(&section, draft, errors);
+        }
+    }
+}
+
+/// What is lost by an unknown key at the top, by what it seems to be meant for.
+fn lose(entry: &Entry<'_>, draft: &mut Draft) {
+    let near = did_you_mean(entry.key, TOP);
+    match near.as_deref() {
+        Some("title" | "solution") => {}
+        Some("include") => draft.lost.everything = true,
+        Some("ring") => draft.lost.ring(),
+        Some(_) => draft.lost.value(entry.value),
+        None => {
+            draft.lost.value(entry.value);
+            // The ring under another name, or without its header.
+            let ring = match entry.value.get_ref() {
+                DeValue::Table(table) => table.iter().any(|(key, _)| key.get_ref() == "generators"),
+                _ => ring::KEYS.contains(&entry.key),
+            };
+            if ring {
+                draft.lost.ring();
+            }
         }
     }
 }

@@ -11,7 +11,7 @@ use crate::source::{Diagnostic, Span};
 pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector) {
     let name = declared_key(entry, errors);
     let Some(section) = entry.section(format!("[model.{}]", shorten(entry.key)), errors) else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     section.allow(
@@ -34,13 +34,13 @@ pub(crate) fn read(entry: &Entry<'_>, draft: &mut Draft, errors: &mut Collector)
     let equation = required_expression(&section, "equation", "equation = \"A'' - x*A\"", errors);
     let kernel = required_expression(&section, "kernel", "kernel = \"…\"", errors);
     let Some(name) = name else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     let (Some(parameter), Some(function), Some(law), Some(traces), Some([x, y])) =
         (parameter, function, law, traces, variables)
     else {
-        draft.incomplete = true;
+        draft.lost.text(entry.key);
         return;
     };
     if let Some(there) = draft.models.get(&name.name) {

@@ -1,65 +1,90 @@
 //! `[ring]` and `[ring.derivative]`.
 
-use super::draft::Draft;
+use super::draft::{Draft, placeholder};
 use super::names::{Primes, declared};
 use super::section::Section;
 use super::{expression, redefinition};
 use crate::collect::Collector;
 use crate::source::Diagnostic;
 use crate::suggest::did_you_mean;
+use std::collections::HashSet;
 
 /// The most generators, and the most constants.
 const MAX_SYMBOLS: usize = 1000;
 
+/// The keys of `[ring]`.
+pub(crate) const KEYS: [&str; 4] = ["variable", "constants", "generators", "derivative"];
+
 pub(crate) fn read(section: &Section<'_>, draft: &mut Draft, errors: &mut Collector) {
-    let keys = ["variable", "constants", "generators", "derivative"];
-    if !section.allow(&keys, errors) {
-        draft.incomplete = true;
+    section.allow(&KEYS, errors);
+    for entry in section.entries().iter().filter(|e| !KEYS.contains(&e.key)) {
+        match did_you_mean(entry.key, KEYS).as_deref() {
+            Some("derivative") => draft.lost.derivation = true,
+            near => {
+                draft.lost.variable |= near.is_none_or(|key| key == "variable");
+                draft.lost.value(entry.value);
+            }
+        }
     }
     if let Some(entry) = section.get("constants") {
         match entry.texts(false, errors) {
             Some(texts) => {
                 for text in texts {
-                    draft
-                        .constants
-                        .extend(declared(&text, Primes::Refused, errors));
+                    match declared(&text, Primes::Refused, errors) {
+                        Some(name) => draft.constants.push(name),
+                        None => draft.lost.text(&text.value),
+                    }
                 }
             }
-            None => draft.incomplete = true,
+            None => draft.lost.value(entry.value),
         }
     }
     check_size(section, draft, errors);
     if let Some(there) = draft.ring {
         // Constants may be added to an included ring; nothing else may change.
-        for key in ["variable", "generators", "derivative"] {
+        let mut again = ["variable", "generators", "derivative"]
+            .into_iter()
+            .filter_map(|key| section.get(key));
+        if let Some(entry) = again.next() {
+            errors.push(redefinition("the ring", entry.key_span, there));
+        }
+        for key in ["variable", "generators"] {
             if let Some(entry) = section.get(key) {
-                errors.push(redefinition("the ring", entry.key_span, there));
+                draft.lost.value(entry.value);
             }
         }
         return;
     }
     draft.ring = Some(section.span);
-    if let Some(text) = section.get("variable").and_then(|e| e.text(errors)) {
-        draft.variable = declared(&text, Primes::Refused, errors);
-        draft.incomplete |= draft.variable.is_none();
+    if let Some(entry) = section.get("variable") {
+        draft.variable = entry
+            .text(errors)
+            .and_then(|text| declared(&text, Primes::Refused, errors));
+        if draft.variable.is_none() {
+            draft.lost.variable = true;
+            draft.lost.value(entry.value);
+        }
     }
-    let generators = section
-        .require("generators", "generators = [\"q\", \"q'\"]", errors)
-        .and_then(|entry| entry.texts(false, errors));
-    match generators {
-        Some(texts) => {
-            for text in texts {
-                match declared(&text, Primes::Allowed, errors) {
-                    Some(name) => draft.generators.push(name),
-                    None => draft.incomplete = true,
+    match section.require("generators", "generators = [\"q\", \"q'\"]", errors) {
+        Some(entry) => match entry.texts(false, errors) {
+            Some(texts) => {
+                for text in texts {
+                    match declared(&text, Primes::Allowed, errors) {
+                        Some(name) => draft.generators.push(name),
+                        None => draft.lost.text(&text.value),
+                    }
                 }
             }
-        }
-        None => draft.incomplete = true,
+            None => draft.lost.value(entry.value),
+        },
+        None => draft.lost.symbols = true,
     }
     check_size(section, draft, errors);
-    if let Some(derivative) = section.section("derivative", "[ring.derivative]", errors) {
-        read_derivatives(&derivative, draft, errors);
+    if let Some(entry) = section.get("derivative") {
+        match entry.section("[ring.derivative]", errors) {
+            Some(derivative) => read_derivatives(&derivative, draft, errors),
+            None => draft.lost.derivation = true,
+        }
     }
     check_derivatives(section, draft, errors);
 }
@@ -74,7 +99,7 @@ fn check_size(section: &Section<'_>, draft: &mut Draft, errors: &mut Collector) 
         );
         draft.generators.truncate(MAX_SYMBOLS);
         draft.constants.truncate(MAX_SYMBOLS);
-        draft.incomplete = true;
+        draft.lost.everything = true;
     }
 }
 
@@ -82,10 +107,11 @@ fn read_derivatives(section: &Section<'_>, draft: &mut Draft, errors: &mut Colle
     for entry in section.entries() {
         let key = declared(&entry.key_text(), Primes::Allowed, errors);
         let value = entry.text(errors).map(|text| expression(&text, errors));
-        let (Some(key), Some(value)) = (key, value) else {
-            draft.incomplete = true;
+        let Some(key) = key else {
+            draft.lost.derivative(entry.key);
             continue;
         };
+        let value = value.unwrap_or_else(|| placeholder(entry.key_span));
         if let Some((there, _)) = draft.derivatives.get(&key.name) {
             errors.push(
                 Diagnostic::new(
@@ -103,11 +129,11 @@ fn read_derivatives(section: &Section<'_>, draft: &mut Draft, errors: &mut Colle
 
 /// The derivation gives the derivative of every generator and of nothing else.
 fn check_derivatives(section: &Section<'_>, draft: &Draft, errors: &mut Collector) {
-    if draft.incomplete {
-        return;
-    }
+    let mut seen = HashSet::new();
     for generator in &draft.generators {
-        if !draft.derivatives.contains_key(&generator.name) {
+        let given = draft.derivatives.contains_key(&generator.name)
+            || draft.lost.hides_derivative(&generator.name);
+        if seen.insert(&generator.name) && !given {
             errors.push_absence(
                 Diagnostic::new(
                     format!("the derivation misses the generator `{}`", generator.name),
@@ -122,7 +148,10 @@ fn check_derivatives(section: &Section<'_>, draft: &Draft, errors: &mut Collecto
     }
     for (name, (span, _)) in &draft.derivatives {
         let generators = || draft.generators.iter().map(|g| g.name.as_str());
-        if errors.is_full() || generators().any(|generator| generator == name) {
+        if errors.is_full()
+            || draft.lost.hides_symbol(name)
+            || generators().any(|generator| generator == name)
+        {
             continue;
         }
         let help = if draft.variable.as_ref().is_some_and(|v| v.name == *name) {

@@ -120,7 +120,15 @@ impl<'a> Section<'a> {
         errors: &mut Collector,
     ) -> Option<&Entry<'a>> {
         let entry = self.get(key);
-        if entry.is_none() && !errors.is_full() {
+        // A slip of the pen in the key is told as such.
+        let misspelt = || {
+            !errors.is_empty()
+                && self
+                    .entries
+                    .iter()
+                    .any(|entry| did_you_mean(entry.key, [key]).is_some())
+        };
+        if entry.is_none() && !errors.is_full() && !misspelt() {
             errors.push_absence(
                 Diagnostic::new(format!("{} has no `{key}`", self.name), self.span)
                     .help(format!("add `{example}`")),

@@ -66,6 +66,9 @@ fn initial_values(
             return None;
         }
         if !generators().any(|generator| generator == name.name) {
+            if draft.lost.hides_symbol(&name.name) {
+                continue;
+            }
             let help = match did_you_mean(&name.name, generators().chain(["decays_like"])) {
                 Some(near) => format!("did you mean `{near}`?"),
                 None => "[solution] takes `at` and one value for each generator".to_owned(),
