@@ -1,7 +1,7 @@
 //! Products, quotients, gcds and derivations of real elements, each with its result asserted.
 
 use divan::Bencher;
-use linform_ring::{Monomial, Polynomial, ProductMethod, Ring, Symbols};
+use linform_ring::{Monomial, Polynomial, PowerMethod, ProductMethod, Ring, Symbols};
 use linform_scalar::{Integer, PrimeField, Rational, SplitMix, Unlimited};
 
 fn main() {
@@ -186,4 +186,50 @@ fn product_in_forty_symbols(bencher: Bencher<'_, '_>) {
         Some(&b)
     );
     bencher.bench_local(|| a.mul(&b, &Unlimited).unwrap());
+}
+
+/// One power by one method.
+fn bench_power(bencher: Bencher<'_, '_>, method: PowerMethod, base: &Polynomial, exponent: u32) {
+    let field = PrimeField::new((1 << 61) - 1).unwrap();
+    let power = base.pow_with(method, exponent, &Unlimited).unwrap();
+    assert_eq!(checksum(&power), field.pow(checksum(base), exponent.into()));
+    bencher.bench_local(|| base.pow_with(method, exponent, &Unlimited).unwrap());
+}
+
+const METHODS: [PowerMethod; 2] = [PowerMethod::Recurrence, PowerMethod::Squaring];
+
+#[divan::bench(args = METHODS, consts = [2, 5, 12, 30, 100], sample_count = 3)]
+fn power_of_a_dense_base<const TERMS: usize>(bencher: Bencher<'_, '_>, method: &PowerMethod) {
+    bench_power(
+        bencher,
+        *method,
+        &univariate(0, TERMS as u16 - 1, 64, 7),
+        100,
+    );
+}
+
+#[divan::bench(args = METHODS, consts = [3, 4, 10, 100, 1000], sample_count = 3)]
+fn power_of_a_trinomial<const EXPONENT: u32>(bencher: Bencher<'_, '_>, method: &PowerMethod) {
+    bench_power(bencher, *method, &univariate(0, 2, 64, 7), EXPONENT);
+}
+
+#[divan::bench(args = METHODS, consts = [5, 20, 80, 300], sample_count = 3)]
+fn power_of_a_geometric_sum<const TERMS: u16>(bencher: Bencher<'_, '_>, method: &PowerMethod) {
+    let base =
+        Polynomial::from_terms((0..TERMS).map(|e| (Monomial::power(0, e).unwrap(), Rational::ONE)));
+    bench_power(bencher, *method, &base, 100);
+}
+
+#[divan::bench(args = METHODS, consts = [10, 20, 40], sample_count = 3)]
+fn power_of_a_sparse_base<const EXPONENT: u32>(bencher: Bencher<'_, '_>, method: &PowerMethod) {
+    let symbols = Symbols::new(vec!["q".into()], Some("t".into()), vec![]);
+    let base = symbols.parse("q^70 + q^3*t^50 - t^77").unwrap();
+    bench_power(bencher, *method, &base, EXPONENT);
+}
+
+#[divan::bench(args = METHODS, consts = [3, 8, 30], sample_count = 3)]
+fn power_in_three_symbols<const EXPONENT: u32>(bencher: Bencher<'_, '_>, method: &PowerMethod) {
+    let symbols = Symbols::new(vec!["q".into(), "r".into()], Some("t".into()), vec![]);
+    let base = symbols.parse("1 + 3*q + 5*r - 7*t").unwrap();
+    bench_power(bencher, *method, &base, EXPONENT);
 }

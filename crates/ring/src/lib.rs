@@ -29,6 +29,6 @@ pub use grading::Grading;
 pub use monomial::Monomial;
 pub use parse::ParseError;
 pub use polynomial::Polynomial;
-pub use product::ProductMethod;
+pub use product::{PowerMethod, ProductMethod};
 pub use ring::{Ring, RingError};
 pub use symbols::Symbols;

@@ -4,6 +4,7 @@ mod choice;
 mod dense;
 mod heap;
 pub(crate) mod kronecker;
+mod power;
 #[cfg(test)]
 mod tests;
 
@@ -15,6 +16,7 @@ use crate::{Monomial, Polynomial};
 pub use choice::ProductMethod;
 pub(crate) use dense::{collect as collect_accumulators, words};
 use linform_scalar::{Control, Integer, Stop};
+pub use power::PowerMethod;
 use std::borrow::Cow;
 
 impl Polynomial {
@@ -65,30 +67,6 @@ impl Polynomial {
             self.denominator().div_exact(&db) * other.denominator().div_exact(&da)
         };
         Ok(Polynomial::normalised_parts(terms, denominator))
-    }
-
-    /// The power.
-    ///
-    /// # Errors
-    ///
-    /// As for [`Polynomial::mul`]. A power that would, cancellation aside, exceed the bounds is refused before
-    /// any work is done.
-    pub fn pow(&self, exponent: u32, control: &dyn Control) -> Result<Polynomial, Stop> {
-        if exponent == 0 {
-            return Ok(Polynomial::one());
-        }
-        if self.is_zero() || exponent == 1 || self.is_one() {
-            return Ok(self.clone());
-        }
-        choice::admit_power(self, exponent, control)?;
-        let mut result = self.clone();
-        for bit in (0..31 - exponent.leading_zeros()).rev() {
-            result = result.mul(&result, control)?;
-            if exponent >> bit & 1 == 1 {
-                result = result.mul(self, control)?;
-            }
-        }
-        Ok(result)
     }
 }
 

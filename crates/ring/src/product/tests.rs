@@ -143,3 +143,68 @@ fn too_many_terms_are_a_size_limit() {
         assert_eq!(a.mul_with(method, &a, &Few).unwrap().len(), 39);
     }
 }
+
+proptest! {
+    #![proptest_config(crate::testing::cases(48))]
+
+    #[test]
+    fn powers_by_recurrence_and_by_squaring_are_repeated_products(a in polynomials(), exponent in 0u32..7) {
+        let expected = (0..exponent).fold(Polynomial::one(), |power, _| power.mul(&a, &Unlimited).unwrap());
+        for method in [PowerMethod::Recurrence, PowerMethod::Squaring] {
+            let power = a.pow_with(method, exponent, &Unlimited).unwrap();
+            prop_assert!(power.is_canonical());
+            prop_assert_eq!(&power, &expected, "{:?}", method);
+        }
+        prop_assert_eq!(&a.pow(exponent, &Unlimited).unwrap(), &expected);
+    }
+}
+
+#[test]
+fn a_high_power_of_a_binomial_has_the_binomial_coefficients() {
+    let x = |i, e| Polynomial::monomial(Monomial::power(i, e).unwrap(), 1.into());
+    let power = (&x(0, 1) - &x(1, 2)).pow(1000, &Unlimited).unwrap();
+    assert!(power.is_canonical());
+    assert_eq!(power.len(), 1001);
+    let mut binomial = Integer::ONE;
+    for (k, (monomial, coefficient)) in power.iter().enumerate() {
+        let k = k as u16;
+        assert_eq!(monomial.exponents(2), [1000 - k, 2 * k]);
+        let sign = Integer::from(if k.is_multiple_of(2) { 1 } else { -1 });
+        assert_eq!(coefficient, &(&binomial * &sign));
+        binomial = (binomial * Integer::from(u32::from(1000 - k)))
+            .div_exact(&Integer::from(u32::from(k + 1)));
+    }
+}
+
+#[test]
+fn a_power_may_lose_coefficients_to_cancellation() {
+    // (1 + 2x − 2x²)² has no x².
+    let x = |e| Polynomial::monomial(Monomial::power(0, e).unwrap(), 2.into());
+    let base = &(&Polynomial::one() + &x(1)) - &x(2);
+    for method in [PowerMethod::Recurrence, PowerMethod::Squaring] {
+        let power = base.pow_with(method, 2, &Unlimited).unwrap();
+        assert_eq!(power.len(), 4, "{method:?}");
+        assert_eq!(power, written_out(&base, &base));
+    }
+}
+
+#[test]
+fn a_long_power_asks_the_control() {
+    struct Impatient;
+    impl Control for Impatient {
+        fn proceed(&self) -> Result<(), Stop> {
+            Err(Stop::TimeLimit)
+        }
+    }
+    let x = Polynomial::monomial(Monomial::power(0, 1).unwrap(), 1.into());
+    let base = &x + &Polynomial::one();
+    assert_eq!(base.pow(2000, &Impatient), Err(Stop::TimeLimit));
+}
+
+#[test]
+fn nested_powers_end_where_the_degree_does() {
+    let symbols = crate::Symbols::new(vec!["q".into()], Some("t".into()), vec![]);
+    assert_eq!(symbols.parse("(1+t)^9999").unwrap().len(), 10_000);
+    let error = symbols.parse("((((q+t)^30)^40)^100)^100").unwrap_err();
+    assert!(error.to_string().contains("too large"), "{error}");
+}
