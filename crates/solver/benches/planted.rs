@@ -2,7 +2,7 @@
 
 use divan::Bencher;
 use linform_ring::{Monomial, Polynomial};
-use linform_scalar::{Rational, SplitMix, Stop, Unlimited};
+use linform_scalar::{Integer, Rational, SplitMix, Stop, Unlimited};
 use linform_solver::{
     Fraction, Outcome, Row, Solved, System, solve, solve_fraction_free, solve_modular, verify,
 };
@@ -226,3 +226,52 @@ shape!(
         solution: Some(2)
     }
 );
+
+#[divan::bench_group(sample_count = 3)]
+mod long_numbers {
+    use super::*;
+
+    const SIZES: [(usize, u32); 6] = [
+        (1, 130_000),
+        (2, 20_000),
+        (3, 2000),
+        (5, 10_000),
+        (10, 1000),
+        (20, 300),
+    ];
+
+    /// Numbers of so many bits, so that the solution is a quotient of determinants.
+    fn quotients(bencher: Bencher<'_, '_>, method: Solve, &(size, bits): &(usize, u32)) {
+        let mut random = SplitMix::new(2025);
+        let mut number = || {
+            let words: Vec<u64> = (0..bits.div_ceil(64)).map(|_| random.next_word()).collect();
+            Polynomial::constant(Integer::from_words(false, &words).into())
+        };
+        let mut system = System::new(size);
+        for _ in 0..size {
+            let entries = (0..size).map(|column| (column, number())).collect();
+            system.push(Row {
+                entries,
+                right: number(),
+            });
+        }
+        bencher.bench_local(|| method(&system, &Unlimited).expect("unlimited"));
+        let outcome = method(&system, &Unlimited).expect("unlimited").outcome;
+        assert_eq!(verify(&system, &outcome, &Unlimited), Ok(Ok(())));
+    }
+
+    #[divan::bench(args = SIZES)]
+    fn fraction_free(bencher: Bencher<'_, '_>, shape: &(usize, u32)) {
+        quotients(bencher, solve_fraction_free, shape);
+    }
+
+    #[divan::bench(args = [(3, 2000)])]
+    fn modular(bencher: Bencher<'_, '_>, shape: &(usize, u32)) {
+        quotients(bencher, solve_modular, shape);
+    }
+
+    #[divan::bench(args = SIZES)]
+    fn chosen(bencher: Bencher<'_, '_>, shape: &(usize, u32)) {
+        quotients(bencher, solve, shape);
+    }
+}

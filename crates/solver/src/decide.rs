@@ -22,7 +22,7 @@ use linform_scalar::{Control, Stop};
 ///
 /// E. H. Bareiss, Math. Comp. 22 (1968) 565–578.
 pub fn solve_fraction_free(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
-    decide(system, &|_, _| Ok(Method::FractionFree), control)
+    decide(system, &|_, _| Ok(Strategy::FractionFree), control)
 }
 
 /// Decides the system by images modulo primes at points, for its independent rows and columns.
@@ -37,13 +37,22 @@ pub fn solve_fraction_free(system: &System, control: &dyn Control) -> Result<Sol
 /// point (for each variable, the degrees of numerator and denominator together) one elimination of `r³/3` word
 /// operations.
 pub fn solve_modular(system: &System, control: &dyn Control) -> Result<Solved, Stop> {
-    decide(system, &|_, _| Ok(Method::Modular), control)
+    decide(system, &|_, _| Ok(Strategy::Modular), control)
 }
 
-/// Names the method for a square system.
-pub(crate) type Choice = dyn Fn(&Square<'_>, &dyn Control) -> Result<Method, Stop>;
+/// What to do with a square system.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Strategy {
+    FractionFree,
+    Modular,
+    /// Images modulo at most so many primes, and elimination if they do not suffice.
+    ModularWithin(u64),
+}
 
-/// Decides the system; `choose` names the method for a square system.
+/// Names the strategy for a square system.
+pub(crate) type Choice = dyn Fn(&Square<'_>, &dyn Control) -> Result<Strategy, Stop>;
+
+/// Decides the system; `choose` names the strategy for a square system.
 pub(crate) fn decide(
     system: &System,
     choose: &Choice,
@@ -66,15 +75,26 @@ pub(crate) fn decide(
     }
 }
 
+/// The solution, and the method that found it.
 fn solve_square(
     square: &Square<'_>,
-    method: Method,
+    strategy: Strategy,
     control: &dyn Control,
-) -> Result<Vec<Quotients>, Stop> {
-    match method {
-        Method::FractionFree => bareiss::solve_square(square, control),
-        Method::Modular => modular::solve_square(square, control),
+) -> Result<(Vec<Quotients>, Method), Stop> {
+    let most_primes = match strategy {
+        Strategy::FractionFree => 0,
+        Strategy::Modular => u64::MAX,
+        Strategy::ModularWithin(primes) => primes,
+    };
+    if most_primes > 0
+        && let Some(solution) = modular::solve_square(square, most_primes, control)?
+    {
+        return Ok((solution, Method::Modular));
     }
+    Ok((
+        bareiss::solve_square(square, control)?,
+        Method::FractionFree,
+    ))
 }
 
 /// The certificate of the profile's contradiction, if it holds in all columns.
@@ -88,8 +108,9 @@ fn refute(
         return Ok(None);
     };
     let square = Square::of_contradiction(system, contradiction);
-    let method = choose(&square, control)?;
-    let Some(weights) = solve_square(&square, method, control)?.pop() else {
+    let strategy = choose(&square, control)?;
+    let (mut solutions, method) = solve_square(&square, strategy, control)?;
+    let Some(weights) = solutions.pop() else {
         return Ok(None);
     };
     let found = certificate::of_weights(system, contradiction, weights, control)?;
@@ -114,8 +135,9 @@ fn solve_profile(
         .filter(|column| profile.columns.binary_search(column).is_err())
         .collect();
     let square = Square::of_profile(system, profile, &free);
-    let method = choose(&square, control)?;
-    let mut solutions = solve_square(&square, method, control)?.into_iter();
+    let strategy = choose(&square, control)?;
+    let (solutions, method) = solve_square(&square, strategy, control)?;
+    let mut solutions = solutions.into_iter();
     let Some(particular) = solutions.next() else {
         return Ok(None);
     };

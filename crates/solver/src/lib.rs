@@ -14,6 +14,7 @@
 mod bareiss;
 mod certificate;
 mod choose;
+mod cost;
 mod decide;
 mod fraction;
 mod independence;

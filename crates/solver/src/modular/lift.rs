@@ -18,14 +18,15 @@ const PATIENCE: Patience = Patience {
 /// So many unlucky primes in a row mean that the stages that are expected are wrong.
 const MOST_UNLUCKY: usize = 3;
 
-/// Solves a square system by images modulo primes.
+/// Solves a square system by images modulo primes, the number of which may be limited; nothing if more are needed.
 ///
 /// The result is multiplied out in every row of the square system before it is returned. No prime is used
 /// twice, and only finitely many are unlucky, so the search ends.
 pub(crate) fn solve_square(
     square: &Square<'_>,
+    limit: u64,
     control: &dyn Control,
-) -> Result<Vec<Quotients>, Stop> {
+) -> Result<Option<Vec<Quotients>>, Stop> {
     let polynomials: Vec<&Polynomial> = square.entries.iter().map(|entry| entry.2).collect();
     let places = square.places();
     let plan = Plan::new(&polynomials);
@@ -38,6 +39,9 @@ pub(crate) fn solve_square(
         let mut unlucky = 0;
         let mut lift: Option<Lift> = None;
         while unlucky <= MOST_UNLUCKY {
+            if next_prime as u64 >= limit {
+                return Ok(None);
+            }
             let field = prime_field(next_prime);
             next_prime += 1;
             let Some(images) = recovery.images_modulo(field, control)? else {
@@ -61,7 +65,7 @@ pub(crate) fn solve_square(
             if let Some(candidate) = candidate
                 && solves(square, &candidate, control)?
             {
-                return Ok(candidate);
+                return Ok(Some(candidate));
             }
         }
     }
