@@ -12,6 +12,8 @@ struct Drawn {
     labels: Vec<LabeledSpan>,
     /// Labels in other files.
     related: Vec<Drawn>,
+    /// Belongs to another diagnostic and is no mistake of its own.
+    is_remark: bool,
 }
 
 impl std::fmt::Display for Drawn {
@@ -23,6 +25,10 @@ impl std::fmt::Display for Drawn {
 impl std::error::Error for Drawn {}
 
 impl miette::Diagnostic for Drawn {
+    fn severity(&self) -> Option<miette::Severity> {
+        self.is_remark.then_some(miette::Severity::Advice)
+    }
+
     fn help<'a>(&'a self) -> Option<Box<dyn std::fmt::Display + 'a>> {
         self.help
             .as_ref()
@@ -66,6 +72,7 @@ fn part(diagnostic: &Diagnostic, sources: &[SourceFile], file: usize, message: S
             source: None,
             labels: Vec::new(),
             related: Vec::new(),
+            is_remark: false,
         };
     };
     if let Some(label) =
@@ -88,6 +95,7 @@ fn part(diagnostic: &Diagnostic, sources: &[SourceFile], file: usize, message: S
             source: None,
             labels: Vec::new(),
             related: Vec::new(),
+            is_remark: false,
         };
     }
     let labels = here()
@@ -104,6 +112,7 @@ fn part(diagnostic: &Diagnostic, sources: &[SourceFile], file: usize, message: S
         source,
         labels,
         related: Vec::new(),
+        is_remark: false,
     }
 }
 
@@ -136,11 +145,20 @@ fn drawn(diagnostic: &Diagnostic, sources: &[SourceFile]) -> Drawn {
             source: None,
             labels: Vec::new(),
             related: Vec::new(),
+            is_remark: false,
         };
     };
     let related = others
         .iter()
-        .map(|&file| part(diagnostic, sources, file, "see also".to_owned()))
+        .map(|&file| Drawn {
+            is_remark: true,
+            ..part(
+                diagnostic,
+                sources,
+                file,
+                "this place belongs to it".to_owned(),
+            )
+        })
         .collect();
     let whole = part(diagnostic, sources, first, diagnostic.message.clone());
     Drawn {

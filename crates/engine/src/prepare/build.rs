@@ -212,13 +212,22 @@ impl<'m> Builder<'m> {
         help: Option<String>,
     ) -> Reported {
         const MOST: usize = 100;
-        if self.diagnostics.len() < MOST {
+        let message = message.to_string();
+        // A mistake that shows at every index is told once.
+        let known = self.diagnostics.iter().any(|diagnostic| {
+            diagnostic.message == message
+                && diagnostic
+                    .labels
+                    .first()
+                    .is_some_and(|label| label.span == span)
+        });
+        if self.diagnostics.len() < MOST && !known {
             let labels = vec![Label {
                 span,
                 text: label.to_owned(),
             }];
             self.diagnostics.push(Diagnostic {
-                message: message.to_string(),
+                message,
                 labels,
                 help,
             });
