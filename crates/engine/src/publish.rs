@@ -166,6 +166,12 @@ impl Publisher {
                     .collect(),
                 value: self.whole(value),
             }),
+            Match::FirstIntegral => Finding::Unsettled(Unsettled {
+                stop: StopKind::Degree,
+                reason: "the terms span a first integral of the derivation, an element with derivative 0, so the derivative \
+                         leaves more open than a constant; leave out a term, or state the claim about the target itself"
+                    .to_owned(),
+            }),
             Match::DegreeLimit { degree } => Finding::Unsettled(Unsettled {
                 stop: StopKind::Degree,
                 reason: format!(

@@ -3,6 +3,7 @@
 use super::equations::Equations;
 use super::fractions::{collect_powers, difference, divided};
 use super::{Match, admitted, match_derivative, split_of};
+use crate::polynomials::combine;
 use crate::record::CoefficientKind;
 use crate::strategy::Solver;
 use linform_ring::{Polynomial, Ring};
@@ -54,16 +55,65 @@ pub(super) fn match_dependent(
                 coefficients: values,
                 ..
             } => {
+                if has_integral(ring, terms, degree + 2, solver, control)? {
+                    return Ok(Match::FirstIntegral);
+                }
                 return unique_or_family(ring, collect(&values)?, terms, kind, solver, control);
             }
             Match::Family { particular, .. } => {
                 let particular = collect(&particular)?;
+                if has_integral(ring, terms, degree + 2, solver, control)? {
+                    return Ok(Match::FirstIntegral);
+                }
                 return unique_or_family(ring, particular, terms, kind, solver, control);
             }
             _ => {}
         }
     }
     Ok(Match::DegreeLimit { degree: bound })
+}
+
+/// Does a form with coefficients up to this degree have derivative 0 without being a constant of the base? Then forms with
+/// one derivative differ by more than the constant of integration.
+fn has_integral(
+    ring: &Ring,
+    terms: &[&Polynomial],
+    degree: usize,
+    solver: Solver,
+    control: &dyn Control,
+) -> Result<bool, Stop> {
+    let Some(variable) = ring.symbols().variable() else {
+        return Ok(false);
+    };
+    let symbol = Polynomial::symbol(ring.symbols(), variable);
+    let mut scaled = Vec::with_capacity(terms.len() * (degree + 1));
+    for term in terms {
+        let mut multiple = (*term).clone();
+        for _ in 0..=degree {
+            scaled.push(multiple.clone());
+            multiple = multiple.mul(&symbol, control)?;
+        }
+    }
+    let derived = scaled
+        .iter()
+        .map(|term| ring.derive(term, control))
+        .collect::<Result<Vec<_>, _>>()?;
+    let columns: Vec<&Polynomial> = derived.iter().collect();
+    let split = split_of(ring, CoefficientKind::Constant);
+    let equations = Equations::new(&columns, &Polynomial::zero(), split);
+    let Outcome::Family { kernel, .. } = equations.solve(solver, control)?.outcome else {
+        return Ok(false);
+    };
+    let scaled: Vec<&Polynomial> = scaled.iter().collect();
+    for vector in &kernel {
+        // The solver's kernel vectors have polynomial entries.
+        let vector = equations.unscale(vector, true);
+        let value = combine(vector.iter().map(Fraction::numerator), &scaled, control)?;
+        if (0..split).any(|symbol| value.involves(symbol)) {
+            return Ok(true);
+        }
+    }
+    Ok(false)
 }
 
 /// A primitive was found. Two forms with the same derivative differ by a constant, so the other solutions are given by the

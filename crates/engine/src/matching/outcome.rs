@@ -71,6 +71,8 @@ pub(crate) enum Match {
         /// The sum of the right sides, not 0; that of the left sides is 0.
         value: Polynomial,
     },
+    /// A form has the derivative, and so have others: the terms span an element with derivative 0 that is no constant of the base.
+    FirstIntegral,
     /// The terms and their derivatives are dependent, and no primitive was found with coefficients up to this degree.
     DegreeLimit {
         /// The largest degree that was tried.

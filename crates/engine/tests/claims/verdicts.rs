@@ -293,3 +293,35 @@ terms = ["E"]
     assert_eq!(text_of_form(form), "(1/k)*E");
     assert!(verify(&record, &Unlimited).unwrap().is_confirmed());
 }
+
+#[test]
+fn a_first_integral_among_the_terms_leaves_a_primitive_open() {
+    // x² + y² is constant, so 2 x y is the derivative of x² and of −y².
+    let text = r#"
+[ring]
+variable = "t"
+generators = ["x", "y"]
+[ring.derivative]
+"x" = "y"
+"y" = "-x"
+[[claim]]
+name = "c"
+derivative = "2*x*y"
+terms = ["x^2", "y^2"]
+"#;
+    let model =
+        linform_spec::parse("spec.toml", text.to_owned(), &mut |_| Err(String::new())).unwrap();
+    let limits = linform_engine::PrepareLimits::default();
+    let prepared = linform_engine::prepare(model, None, limits).unwrap();
+    let record = linform_engine::solve(
+        &prepared,
+        &[true],
+        Options::default(),
+        &Unlimited,
+        &linform_engine::Silent,
+    );
+    let Finding::Unsettled(unsettled) = &only(&record).finding else {
+        panic!("{:?}", only(&record).finding);
+    };
+    assert!(unsettled.reason.contains("first integral"));
+}
