@@ -69,10 +69,33 @@ impl Check<'_> {
         // Two forms with one derivative differ by a constant: the terms and 1 must be independent then.
         let one = self.arithmetic.one();
         let with_one: Vec<&Expansion> = std::iter::once(&one).chain(&compared.terms).collect();
-        if compared.paired && self.rank(&with_one, compared.split) == with_one.len() {
+        if compared.paired
+            && self.rank(&with_one, compared.split) == with_one.len()
+            && !self.has_integral(compared)?
+        {
             return Ok(());
         }
         wrong("the form is not the only one")
+    }
+
+    /// Does a combination of the terms, with coefficients of low degree in the variable, have derivative 0?
+    fn has_integral(&self, compared: &Compared) -> Result<bool, CheckError> {
+        const DEGREE: usize = 2;
+        let prepared = self.arithmetic.prepared;
+        let Some(variable) = prepared.variable() else {
+            return Ok(false);
+        };
+        let symbol = Expansion::symbol(prepared.symbols.len(), variable);
+        let mut columns = Vec::with_capacity(compared.terms.len() * (DEGREE + 1));
+        for term in &compared.terms {
+            let mut multiple = term.clone();
+            for _ in 0..=DEGREE {
+                columns.push(self.arithmetic.derivative(&multiple)?);
+                multiple = self.arithmetic.product(&multiple, &symbol)?;
+            }
+        }
+        let columns: Vec<&Expansion> = columns.iter().collect();
+        Ok(self.rank(&columns, prepared.constants().start) < columns.len())
     }
 
     /// The rank of elements over the rational functions of the base, by their values modulo a prime at a point that nobody
